@@ -1,0 +1,5 @@
+"""`python -m fibremr`."""
+
+from fibremr.cli import main
+
+main()

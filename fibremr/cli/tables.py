@@ -1,0 +1,146 @@
+"""`fibremr profiles`, `steels`, `patterns` and `methods`: what the tables and libraries hold."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import click
+
+from fibremr.cli.options import json_option
+
+
+def _show(rows: list[dict[str, Any]], as_json: bool, *, heading: str = "", footing: str = "") -> None:
+    if as_json:
+        from fibremr.output import json_text
+
+        click.echo(json_text({"rows": rows}), nl=False)
+        return
+    from fibremr.summary import table
+
+    if heading:
+        click.echo(heading)
+    if rows:
+        cells = [list(rows[0]), *([_cell(v) for v in row.values()] for row in rows)]
+        click.echo("\n".join(table(cells)))
+    if footing:
+        click.echo(footing)
+
+
+def _cell(value: object) -> str:
+    if value is None:
+        return "-"
+    return (
+        f"{value:.4g}"
+        if isinstance(value, float) and abs(value) < 1e4
+        else (f"{value:.0f}" if isinstance(value, float) else str(value))
+    )
+
+
+@click.command()
+@click.argument("text", default="", metavar="[TEXT]")
+@json_option
+def profiles(text: str, as_json: bool) -> None:
+    """Profiles of the tables whose name holds TEXT (all of them without it), with exact properties.
+
+    Dimensions and properties in mm and cm, y about the horizontal axis, z about the vertical one.
+    """
+    from fibremr.errors import CaseError, Fault
+    from fibremr.section import catalogue
+    from fibremr.summary import profile_row
+
+    wanted = catalogue.spelling(text)
+    every = catalogue.profiles()
+    found = [p for p in every if any(wanted in catalogue.spelling(n) for n in (p.name, *p.also))]
+    exact = [p for p in found if wanted in {catalogue.spelling(n) for n in (p.name, *p.also)}]
+    if not found:
+        from fibremr.errors import closest
+
+        raise CaseError(
+            [
+                Fault(
+                    "unknown-name",
+                    f'no profile has "{text}" in its name',
+                    suggestion=closest(text, [p.name for p in every]),
+                )
+            ]
+        )
+    _show(
+        [profile_row(p) for p in exact or found],
+        as_json,
+        footing="Properties are exact for the dimensions, root fillets and corner radii included. The\n"
+        "tables are from memory of the standards named; each row was checked by its mass and, where known,\n"
+        "its printed properties.",
+    )
+
+
+@click.command()
+@click.argument("text", default="", metavar="[TEXT]")
+@json_option
+def steels(text: str, as_json: bool) -> None:
+    """Steel grades of the table whose name or standard holds TEXT, with strengths by thickness."""
+    from fibremr.errors import CaseError, Fault
+    from fibremr.steel import grades
+
+    wanted = grades.spelling(text)
+
+    def spellings(s: grades.Strength) -> set[str]:
+        return {*grades.names(s.grade), grades.spelling(s.grade), grades.spelling(s.standard)}
+
+    found = [s for s in grades.strengths() if any(wanted in name for name in spellings(s))]
+    if not found:
+        from fibremr.errors import closest
+
+        names = list(dict.fromkeys(s.grade for s in grades.strengths()))
+        raise CaseError(
+            [
+                Fault(
+                    "unknown-name",
+                    f'no grade has "{text}" in its name or standard',
+                    suggestion=closest(text, names),
+                )
+            ]
+        )
+    _show(
+        [
+            {
+                "grade": s.grade, "over_mm": s.above, "to_mm": None if s.upto == float("inf") else s.upto,
+                "yield_MPa": s.yield_stress, "ultimate_MPa": s.ultimate, "modulus_GPa": s.modulus / 1e3,
+                "standard": s.standard, "product": s.product,
+            }
+            for s in found
+        ],
+        as_json,
+        footing="From memory of the standards named: compare with the printed standard before use.",
+    )  # fmt: skip
+
+
+@click.command()
+@json_option
+def patterns(as_json: bool) -> None:
+    """Residual-stress patterns, with source and validity."""
+    from fibremr.residual import PATTERNS
+
+    rows = [{"pattern": p.name, "source": p.source, "validity": p.validity} for p in PATTERNS]
+    _words(rows, as_json)
+
+
+@click.command()
+@json_option
+def methods(as_json: bool) -> None:
+    """Methods that limit the rotation of a section, with what they give, source and validity."""
+    from fibremr.limits import METHODS
+
+    _words([dict(m) for m in METHODS], as_json)
+
+
+def _words(rows: list[dict[str, str]], as_json: bool) -> None:
+    if as_json:
+        _show(rows, True)
+        return
+    from textwrap import indent, wrap
+
+    for row in rows:
+        name, *rest = row.items()
+        click.echo(name[1])
+        for key, text in rest:
+            click.echo(indent("\n".join(wrap(f"{key}: {text}", 94)), "    "))
