@@ -7,8 +7,8 @@ from math import pi
 import builders
 import numpy as np
 import pytest
-from convergence.dense import i_cells, moments
 
+from convergence.dense import i_cells, moments
 from fibremr.bending import Bar, trace_curve
 from fibremr.residual import EccsRolled
 from fibremr.section.shapes import i_section
