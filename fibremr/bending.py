@@ -189,7 +189,8 @@ class Curve:
     @cached_property
     def moment(self) -> Array:
         """Moment [Nmm]."""
-        return np.array([s.moment[0] for s in self.states]) * self.bar.sense
+        found = np.array([s.moment[0] for s in self.states]) * self.bar.sense
+        return np.where(np.abs(found) < 1e-12 * self.bar.plastic_alone.moment, 0.0, found)
 
     @cached_property
     def strain(self) -> Array:

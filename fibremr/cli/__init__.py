@@ -8,6 +8,7 @@ from importlib import import_module
 from typing import Any
 
 import click
+from click.utils import PacifyFlushWrapper
 
 from fibremr import __version__
 
@@ -106,6 +107,9 @@ def run(arguments: list[str]) -> int:
         click.echo("interrupted; nothing incomplete was kept", err=True)
         return 130
     except BrokenPipeError:
-        # the reader of a pipe has left: no error, and nothing more can be said to it
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())  # nothing more can be said
         return 0
+    except SystemExit as error:
+        # click ends with 1 when the reader of a pipe has left, which is no error here
+        left = isinstance(sys.stdout, PacifyFlushWrapper)
+        return 0 if left else error.code if isinstance(error.code, int) else 0

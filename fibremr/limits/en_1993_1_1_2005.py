@@ -31,7 +31,7 @@ def internal(alpha: float, psi: float, eps: float) -> Three:
     """
     if alpha <= 0.0:
         one = two = inf
-    elif alpha > 0.5:
+    elif alpha > 0.5 + 1e-9:
         one, two = 396.0 * eps / (13.0 * alpha - 1.0), 456.0 * eps / (13.0 * alpha - 1.0)
     else:
         one, two = 36.0 * eps / alpha, 41.5 * eps / alpha

@@ -53,9 +53,7 @@ _PRODUCTS = {
     PLATED: ("plate", "hot-rolled"),
 }
 
-CODE_STANDARDS = {
-    "EN 1993-1-1:2005": ("EN 1993-1-1:2005",),
-}
+TABLE_3_1 = ("EN 1993-1-1:2005",)  # the standards to look in first, by their beginnings
 
 
 def spelling(text: str) -> str:

@@ -41,7 +41,7 @@ def i_cells(h: float, b: float, tw: float, tf: float, r: float, *, peak: float, 
     y, z, a = grid(-tw / 2, tw / 2, -hw / 2, hw / 2, web_across, web_along)
     parts.append((y, z, a, peak * (2.0 * np.abs(z) / (hw / 2) - 1.0)))
     if r > 0.0:
-        # one spandrel in strips along the web: at a distance x from the flange it is r - sqrt(r2 - (r-x)2) wide
+        # a spandrel in strips along the web: x from the flange it is r - sqrt(r2 - (r-x)2) wide
         strips = 240
         x = (np.arange(strips) + 0.5) * r / strips
         width = r - np.sqrt(r * r - (r - x) ** 2)

@@ -38,7 +38,7 @@ def test_ipe_300_properties() -> None:
 @pytest.mark.parametrize(
     ("law", "ratios"),
     [
-        # at 1.05 the front is in the flange and the exact moment 0.918300 Mp (test below); the sheet has 0.91835
+        # at 1.05 the front is in the flange: exactly 0.918300 Mp (test below); the sheet has 0.91835
         (PLASTIC, {1: 0.88655, 1.05: 0.91830, 1.2: 0.94115, 1.5: 0.96234, 2: 0.97881, 3: 0.99058,
                    5: 0.99661, 10: 0.99915, 20: 0.99979}),
         (HARDENING, {2: 0.98676, 5: 1.03097, 10: 1.07782, 20: 1.16710}),
