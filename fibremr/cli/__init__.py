@@ -8,7 +8,6 @@ from importlib import import_module
 from typing import Any
 
 import click
-from click.utils import PacifyFlushWrapper
 
 from fibremr import __version__
 
@@ -111,5 +110,5 @@ def run(arguments: list[str]) -> int:
         return 0
     except SystemExit as error:
         # click ends with 1 when the reader of a pipe has left, which is no error here
-        left = isinstance(sys.stdout, PacifyFlushWrapper)
+        left = isinstance(error.__context__, BrokenPipeError)
         return 0 if left else error.code if isinstance(error.code, int) else 0
