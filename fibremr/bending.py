@@ -189,8 +189,7 @@ class Curve:
     @cached_property
     def moment(self) -> Array:
         """Moment [Nmm]."""
-        found = np.array([s.moment[0] for s in self.states]) * self.bar.sense
-        return np.where(np.abs(found) < 1e-12 * self.bar.plastic_alone.moment, 0.0, found)
+        return np.array([self.event(s).moment for s in self.states])
 
     @cached_property
     def strain(self) -> Array:
@@ -243,8 +242,10 @@ class Curve:
 
     def event(self, state: kernel.State) -> Event:
         """A state as a place on the curve."""
-        sense = self.bar.sense
-        return Event(float(state.curvature[0]) * sense, float(state.moment[0]) * sense)
+        sense, moment = self.bar.sense, float(state.moment[0])
+        if abs(moment) < 1e-12 * self.bar.plastic_alone.moment:
+            moment = 0.0  # rounding of the sum over the fibres
+        return Event(float(state.curvature[0]) * sense, moment * sense)
 
     def at_curvature(self, curvature: float) -> kernel.State:
         """The state at a curvature [1/mm] within the curve, solved for."""

@@ -97,7 +97,7 @@ def trace(case: Case, *, figures_and_files: tuple[str, ...] = ()) -> TraceResult
     """
     bar = bar_of(case)
     residual = bar.residual(case.pattern, case.scale) if case.pattern else None
-    classed = classify(bar, case.section, minor=case.bending.about == "minor")
+    classed = _class(case, bar)
     limits = available.wanted(case.limits, classed)
     names = available.named(case.limits)
     end = DEFAULT_END if case.to is None else case.to
@@ -117,6 +117,13 @@ def trace(case: Case, *, figures_and_files: tuple[str, ...] = ()) -> TraceResult
     record = replace(record, files=figures_and_files)
     plain_turn = turn if residual is None else available.turning(plain, case.setup)
     return TraceResult(case, bar, curve, plain, turn, plain_turn, classed, tuple(carried), record)
+
+
+def _class(case: Case, bar: Bar) -> SectionClass:
+    classed = classify(bar, case.section, minor=case.bending.about == "minor")
+    if all(steel.carbon for steel in case.steels):
+        return classed
+    return SectionClass(classed.code, None, (), "its classes are those of carbon steel")
 
 
 def _stops(bar: Bar, residual: Residual | None) -> list[float]:

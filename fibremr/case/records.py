@@ -22,12 +22,16 @@ class Entry:
 
 @dataclass(frozen=True)
 class Steel:
-    """The steel of one part: its law, ultimate strength [MPa] if known, density [kg/m3] and source."""
+    """The steel of one part: its law, ultimate strength [MPa] if known, density [kg/m3] and source.
+
+    `carbon` is false for stainless steel and aluminium, which have laws and classes of their own.
+    """
 
     law: Law
     ultimate: float | None
     density: float
     source: str
+    carbon: bool
 
 
 @dataclass(frozen=True)

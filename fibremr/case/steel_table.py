@@ -55,6 +55,11 @@ def read_steels(
         sub.finish()
         table.sound &= sub.sound
     if section is None or section_table is None:
+        for spec in (base, *special.values()):
+            if (
+                base.table.sound and spec.table.sound
+            ):  # any usual thickness shows the faults that are not the section's
+                _resolve(spec, 10.0, grades.ROLLED)
         return None
     used = {part.steel for part in section.parts}
     for name in inner:
@@ -105,6 +110,11 @@ def _made(section: Section) -> str:
 def _steel_spec(table: Table) -> _SteelSpec:
     table.refuse_later(_LATER_STEEL_KEYS)
     grade = table.text("grade") if table.has("grade") else None
+    if grade is not None:
+        try:
+            grades.matching(grade)
+        except ValueFault as error:
+            table.fail(error.key, error)
     standard = table.text("standard") if table.has("standard") else None
     law = table.choice("law", LAWS, later=LATER_LAWS) if table.has("law") else None
     sizes = {}
@@ -115,12 +125,26 @@ def _steel_spec(table: Table) -> _SteelSpec:
     ):
         given = table.has(key)
         sizes[key] = table.quantity(key, "stress", least=least, most=most, text=text) if given else None
+    _ordered(table, sizes["yield"], sizes["ultimate"])
     hardening: object = None
     if table.has("hardening"):
         hardening = _hardening(table)
     return _SteelSpec(
         table, grade, standard, law, sizes["yield"], sizes["ultimate"], sizes["modulus"], hardening
     )
+
+
+def _ordered(table: Table, fy: float | None, fu: float | None) -> bool:
+    """Whether yield does not exceed ultimate [MPa]; a fault otherwise."""
+    if fy is None or fu is None or fu >= fy:
+        return True
+    fault = ValueFault(
+        "the yield strength exceeds the ultimate strength",
+        allowed=f"yield up to ultimate; here {fy:g} and {fu:g} MPa",
+        code="range",
+    )
+    table.fail("ultimate" if "ultimate" in table.data else "yield", fault)
+    return False
 
 
 def _hardening(table: Table) -> object:
@@ -179,16 +203,7 @@ def _resolve(spec: _SteelSpec, thickness: float, made: str) -> Steel | None:
     fy = spec.strength if spec.strength is not None else strength.yield_stress if strength else 0.0
     fu = spec.ultimate if spec.ultimate is not None else strength.ultimate if strength else None
     modulus = spec.modulus or (strength.modulus if strength else 210e3)
-    if fu is not None and fu < fy:
-        key = "ultimate" if spec.ultimate is not None else "yield"
-        table.fail(
-            key,
-            ValueFault(
-                "the yield strength exceeds the ultimate strength",
-                allowed=f"yield up to ultimate; here {fy:g} and {fu:g} MPa",
-                code="range",
-            ),
-        )
+    if not _ordered(table, fy, fu):
         return None
     law_name = spec.law or LAWS[0]
     law: Law
@@ -200,6 +215,12 @@ def _resolve(spec: _SteelSpec, thickness: float, made: str) -> Steel | None:
                     key="ultimate",
                     allowed='such as ultimate = "490 MPa"',
                     code="missing",
+                )
+            if strength is not None and not strength.carbon:
+                raise ValueFault(
+                    f"the quad-linear law is one of hot-rolled carbon steel, not of {strength.grade}",
+                    key="law",
+                    allowed="elastic-plastic, bilinear",
                 )
             law = QuadLinear(modulus, fy, fu)
         elif law_name == "bilinear":
@@ -228,7 +249,8 @@ def _resolve(spec: _SteelSpec, thickness: float, made: str) -> Steel | None:
         notes.entry((*table.path, "law"), f'"{law_name}"', "default")
     if law_name == "bilinear" and spec.hardening is None:
         notes.entry((*table.path, "hardening"), '"E/100"', "default, EN 1993-1-5 C.6(1)c")
-    return Steel(law, fu, strength.density if strength else STEEL_DENSITY, source)
+    density = strength.density if strength else STEEL_DENSITY
+    return Steel(law, fu, density, source, strength is None or strength.carbon)
 
 
 def _slope(hardening: object, modulus: float) -> float:

@@ -282,7 +282,9 @@ _EXAMPLE = {
 
 
 def _plain(word: str) -> str:
-    return "".join(c for c in word.lower() if c.isalnum() or c == ":")
+    """What a word is compared by: "3-point" is as good as "Three point"."""
+    plain = "".join(c for c in word.lower() if c.isalnum() or c == ":")
+    return plain.replace("3", "three").replace("4", "four")
 
 
 def _steps(key: str) -> list[str | int]:

@@ -109,6 +109,6 @@ def run(arguments: list[str]) -> int:
         os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())  # nothing more can be said
         return 0
     except SystemExit as error:
-        # click ends with 1 when the reader of a pipe has left, which is no error here
-        left = isinstance(error.__context__, BrokenPipeError)
+        # when the reader of a pipe has left, click wraps the streams and ends with 1: no error here
+        left = type(sys.stdout).__name__.endswith("PacifyFlushWrapper")
         return 0 if left else error.code if isinstance(error.code, int) else 0

@@ -31,6 +31,11 @@ class Strength:
     note: str
 
     @property
+    def carbon(self) -> bool:
+        """Whether it is carbon steel, and not stainless steel or aluminium."""
+        return not self.standard.startswith(("EN 1993-1-4", "EN 1999"))
+
+    @property
     def source(self) -> str:
         """Grade, table and band in words."""
         upto = f" to {self.upto:g}" if self.upto < inf else ""
@@ -92,21 +97,15 @@ def names(grade: str) -> set[str]:
     return found
 
 
-def find(grade: str, thickness: float, *, made: str, standards: tuple[str, ...], strict: bool) -> Strength:
-    """The band of a grade for a thickness [mm].
-
-    `standards` are preferred in their order (beginnings of names suffice); with `strict` no other will do.
-    `made` is how the section is made: ROLLED, PLATED, HOLLOW or ROUND.
-
-    Raises ValueFault for an unknown grade or standard, or a thickness beyond the table.
-    """
+def matching(grade: str) -> list[Strength]:
+    """Every band of a grade, by any standard. Raises ValueFault for an unknown grade."""
     wanted = spelling(grade)
     bare = re.sub(r"^(S\d{3})(JR|J0|J2|K2)$", r"\1", wanted)
-    matching = [s for s in strengths() if wanted in names(s.grade)]
-    matching = matching or [s for s in strengths() if bare in names(s.grade)]
-    if not matching and re.fullmatch(r"S\d{3}", wanted):  # S460 for S460N or S460M, which is then named
-        matching = [s for s in strengths() if s.grade.startswith(wanted) and "H" not in s.grade]
-    if not matching:
+    found = [s for s in strengths() if wanted in names(s.grade)]
+    found = found or [s for s in strengths() if bare in names(s.grade)]
+    if not found and re.fullmatch(r"S\d{3}", wanted):  # S460 for S460N or S460M, which is then named
+        found = [s for s in strengths() if s.grade.startswith(wanted) and "H" not in s.grade]
+    if not found:
         known = list(dict.fromkeys(s.grade for s in strengths()))
         raise ValueFault(
             "no such grade in the table",
@@ -115,6 +114,18 @@ def find(grade: str, thickness: float, *, made: str, standards: tuple[str, ...],
             suggestion=closest(grade, known),
             code="unknown-name",
         )
+    return found
+
+
+def find(grade: str, thickness: float, *, made: str, standards: tuple[str, ...], strict: bool) -> Strength:
+    """The band of a grade for a thickness [mm].
+
+    `standards` are preferred in their order (beginnings of names suffice); with `strict` no other will do.
+    `made` is how the section is made: ROLLED, PLATED, HOLLOW or ROUND.
+
+    Raises ValueFault for an unknown grade or standard, or a thickness beyond the table.
+    """
+    bands = matching(grade)
 
     def preference(s: Strength) -> int:
         plain = spelling(s.standard)
@@ -124,9 +135,9 @@ def find(grade: str, thickness: float, *, made: str, standards: tuple[str, ...],
         return len(standards)
 
     if strict:
-        kept = [s for s in matching if preference(s) < len(standards)]
+        kept = [s for s in bands if preference(s) < len(standards)]
         if not kept:
-            have = sorted({s.standard for s in matching})
+            have = sorted({s.standard for s in bands})
             raise ValueFault(
                 f"the table has no {grade} by that standard",
                 key="standard",
@@ -134,14 +145,14 @@ def find(grade: str, thickness: float, *, made: str, standards: tuple[str, ...],
                 suggestion=closest(standards[0], have),
                 code="unknown-name",
             )
-        matching = kept
+        bands = kept
 
     def fitness(s: Strength) -> int:
         wants = _PRODUCTS[made]
         return next((i for i, want in enumerate(wants) if want in s.product), len(wants))
 
-    best = min(matching, key=lambda s: (preference(s), fitness(s)))
-    bands = [s for s in matching if (s.standard, s.product) == (best.standard, best.product)]
+    best = min(bands, key=lambda s: (preference(s), fitness(s)))
+    bands = [s for s in bands if (s.standard, s.product) == (best.standard, best.product)]
     for band in bands:
         if band.above < thickness <= band.upto:
             return band
