@@ -171,7 +171,8 @@ class Curve:
     Arrays are `(point,)`: curvature [1/mm], moment [Nmm], strain at the centroid, at the top and at the
     bottom edge [1] (applied, tension positive), tangent stiffness [Nmm2], yielded share of the area [1].
     `error` is the estimated error of the moment by the fibres over the whole curve, as a share of Mp.
-    `ended_by_law` is true when the curve stops because a law ends.
+    `ended_by_law` is true when the curve stops because a law ends; `coarse` are the fibres half as fine that
+    the error is judged by, with their state at the last curvature traced.
     """
 
     bar: Bar
@@ -180,6 +181,7 @@ class Curve:
     states: tuple[kernel.State, ...]
     error: float
     ended_by_law: bool
+    coarse: tuple[kernel.Fibres, kernel.State]
 
     @cached_property
     def curvature(self) -> Array:
@@ -299,68 +301,58 @@ class Tracer:
 
 
 def trace_curve(
-    bar: Bar,
-    residual: Residual | None,
-    *,
-    stops: Sequence[float],
-    target: float = TARGET,
-    until: Callable[[kernel.State], float] | None = None,
+    bar: Bar, residual: Residual | None, *, stops: Sequence[float], target: float = TARGET
 ) -> Curve:
     """The curve of a bar up to the last of the curvatures `stops` [1/mm], all of which it meets.
 
     The fibres are made finer until the largest difference to a mesh half as fine, over the whole curve,
     is within `target` (a share of Mp); that difference is the error reported, and a cautious one, since
-    the fibres used err by about a quarter of it. The curve ends early where a law ends, or where `until`
-    turns positive.
+    the fibres used err by about a quarter of it. The curve ends early where a law ends.
 
-    Raises NotConverged when the target is out of reach.
+    Raises NotConverged when the target is out of reach, or when the axial force alone ends the law.
     """
     aim, across = target / 40.0, 12
-    plastic_moment = bar.plastic_alone.moment
     for _ in range(6):
         tracer = Tracer(bar, fibres(bar, residual, aim, across))
-        states, ended = _states(bar, residual, tracer, stops, until)
         coarse = Tracer(bar, fibres(bar, residual, 4.0 * aim, max(1, across // 2)))
-        error = _largest_difference(bar, coarse, states) / plastic_moment
-        if error <= target:
-            return Curve(bar, residual, tracer.fibres, tuple(states), error, ended)
-        refine = min(16.0, 1.5 * error / target)
+        begin = tracer.begin()
+        past_law = tracer.past_law(residual)
+        if past_law is not None and past_law(begin) > 0.0:
+            raise NotConverged("the axial force strains the steel beyond the end of its law")
+        start = Curve(bar, residual, tracer.fibres, (begin,), 0.0, False, (coarse.fibres, coarse.begin()))
+        curve = extended(start, stops)
+        if curve.error <= target:
+            return curve
+        refine = min(16.0, 1.5 * curve.error / target)
         aim, across = aim / refine, int(np.ceil(across * min(3.0, refine**0.5)))
     raise NotConverged(
-        f"the fibres do not reach an error of {100 * target:g} % of Mp: {100 * error:.3g} % with "
+        f"the fibres do not reach an error of {100 * target:g} % of Mp: {100 * curve.error:.3g} % with "
         f"{tracer.fibres.area.size} fibres"
     )
 
 
-def _states(
-    bar: Bar,
-    residual: Residual | None,
-    tracer: Tracer,
-    stops: Sequence[float],
-    until: Callable[[kernel.State], float] | None,
-) -> tuple[list[kernel.State], bool]:
-    unit = bar.unit_curvature
-    past_law = tracer.past_law(residual)
-    checks = [c for c in (past_law, until) if c is not None]
-    begin = tracer.begin()
-    if past_law is not None and past_law(begin) > 0.0:
-        raise NotConverged("the axial force strains the steel beyond the end of its law")
+def extended(curve: Curve, stops: Sequence[float]) -> Curve:
+    """A curve traced on from its end through further curvatures [1/mm]; its error is kept up to date."""
+    bar, tracer = curve.bar, curve.tracer()
+    end = float(curve.curvature[-1])
+    further = sorted(s for s in set(stops) if s > end)
+    if not further or curve.ended_by_law:
+        return curve
+    past_law, unit = tracer.past_law(curve.residual), bar.unit_curvature
     states = march(
         tracer.advance,
-        begin,
+        curve.states[-1],
         tracer.read,
-        stops=sorted(s for s in set(stops) if s > 0.0),
+        stops=further,
         tolerance=CHORD * bar.plastic_alone.moment,
         largest=lambda x: 0.04 * x + 0.1 * unit,
-        until=(lambda s: max(c(s) for c in checks)) if checks else None,
+        until=past_law,
     )
     ended = past_law is not None and past_law(states[-1]) > -1e-9
-    return states, ended
-
-
-def _largest_difference(bar: Bar, tracer: Tracer, states: Sequence[kernel.State]) -> float:
-    state, worst = tracer.begin(), 0.0
-    for given in states:
-        state = tracer.advance(state, float(given.curvature[0]) * bar.sense)
+    made, state = curve.coarse
+    check, worst = Tracer(bar, made), 0.0
+    for given in states[1:]:
+        state = check.advance(state, float(given.curvature[0]) * bar.sense)
         worst = max(worst, abs(float(state.moment[0] - given.moment[0])))
-    return worst
+    error = max(curve.error, worst / bar.plastic_alone.moment)
+    return Curve(bar, curve.residual, curve.fibres, (*curve.states, *states[1:]), error, ended, (made, state))

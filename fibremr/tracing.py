@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 
 from fibremr import __version__, available, results
 from fibremr.available import Limit, Turning
-from fibremr.bending import Bar, Curve, trace_curve
+from fibremr.bending import Bar, Curve, extended, trace_curve
 from fibremr.case.records import Case
 from fibremr.case.tables import bar_of
 from fibremr.classes import SectionClass, classify
@@ -29,17 +29,12 @@ FURTHEST_END = 640.0  # multiples of Mp/(EI) up to which a limit is looked for
 
 @dataclass(frozen=True)
 class TraceResult:
-    """A traced case: the record of results.json, the curve with and without residual stress, limits.
-
-    `plain` is the curve without residual stress, the same as `curve` when there is none.
-    """
+    """A traced case: the record of results.json, the curve, its rotation, class and limits."""
 
     case: Case
     bar: Bar
     curve: Curve
-    plain: Curve
     turn: Turning | None
-    plain_turn: Turning | None
     classed: SectionClass
     limits: tuple[Limit, ...]
     record: results.TraceRecord
@@ -48,6 +43,18 @@ class TraceResult:
     def governs(self) -> Limit | None:
         """The limit that governs, if any."""
         return next((l for l in self.limits if l.governs), None)
+
+    @cached_property
+    def plain(self) -> Curve:
+        """The curve without residual stress, for comparison; the same as `curve` when there is none."""
+        if self.curve.residual is None:
+            return self.curve
+        return _curve(self.bar, None, self.curve.curvature[-1] / self.bar.unit_curvature)
+
+    @property
+    def plain_turn(self) -> Turning | None:
+        """The rotation without residual stress."""
+        return self.turn if self.curve.residual is None else available.turning(self.plain, self.case.setup)
 
     @cached_property
     def tables(self) -> dict[str, dict[str, Array]]:
@@ -112,11 +119,9 @@ def trace(case: Case, *, figures_and_files: tuple[str, ...] = ()) -> TraceResult
             curve = _cut(full, last)
     curve = _with_limits(curve, carried)
     turn = available.turning(curve, case.setup)
-    plain = curve if residual is None else _curve(bar, None, curve.curvature[-1] / bar.unit_curvature)
     record = _record(case, bar, residual, curve, turn, classed, carried)
     record = replace(record, files=figures_and_files)
-    plain_turn = turn if residual is None else available.turning(plain, case.setup)
-    return TraceResult(case, bar, curve, plain, turn, plain_turn, classed, tuple(carried), record)
+    return TraceResult(case, bar, curve, turn, classed, tuple(carried), record)
 
 
 def _class(case: Case, bar: Bar) -> SectionClass:
@@ -156,7 +161,7 @@ def _far_enough(curve: Curve, case: Case, limits: list[Limit], names: set[str], 
         ]  # fmt: skip
         if not missing:
             return curve
-        further = _curve(curve.bar, curve.residual, 2.0 * end)
+        further = extended(curve, [2.0 * end * curve.bar.unit_curvature])
         if turn is not None and all(l.quantity != "strain" for l in missing):
             gained = available.turning(further, case.setup)
             assert gained is not None

@@ -119,9 +119,10 @@ def moment_rotation(result: TraceResult) -> Figure:
         linestyle=(0, (1, 1.5)),
         label="two straight lines, theta_p and Mp",
     )
-    if result.plain_turn is not None and result.plain is not result.curve:
+    plain = result.plain_turn
+    if plain is not None and result.plain is not result.curve:
         axes.plot(
-            1e3 * result.plain_turn.rotation,
+            1e3 * plain.rotation,
             result.plain.moment * scale,
             color=RUST,
             linewidth=1.1,

@@ -83,7 +83,9 @@ def _plate(
         n_along = ceil(rise_along / cell_height(target, modulus, area / rise_along))
         n_through = max(1, ceil(rise_through / cell_height(target, modulus, length)))
     else:
-        n_through = ceil(rise_through / cell_height(target, modulus, area / rise_through))
+        # where residual stress varies along the plate it yields in patches, and layers count for less
+        share = target if breaks is None else 4.0 * target
+        n_through = ceil(rise_through / cell_height(share, modulus, area / rise_through))
         n_along = max(1, ceil(rise_along / cell_height(target, modulus, thickness)))
     edges = [0.0, *sorted(b for b in breaks or () if 0.0 < b < 1.0), 1.0]
     counts = [
