@@ -67,11 +67,24 @@ class Turning:
 
     def rotation_at(self, state: kernel.State) -> float:
         """Rotation [rad] with a state as the peak of the diagram, whose place is on or past the curve."""
+        return self._at(state)[0]
+
+    def deflection_at(self, state: kernel.State) -> float:
+        """Deflection [mm] with a state as the peak of the diagram."""
+        return self._at(state)[1]
+
+    def _at(self, state: kernel.State) -> tuple[float, float]:
         event = self.curve.event(state)
         before = int(np.searchsorted(self.curve.curvature, event.curvature, side="left"))
         curvature = np.append(self.curve.curvature[:before], event.curvature)
         moment = np.append(self.curve.moment[:before], event.moment)
-        return float(self.setup.rotations(curvature, moment, since=before)[0][-1])
+        rotation, deflection = self.setup.rotations(curvature, moment, since=before)
+        return float(rotation[-1]), float(deflection[-1])
+
+    def plastic(self, rotation: float, moment: float) -> float:
+        """Plastic part of a rotation [rad] at a peak moment [Nmm]; rounding counts as nothing."""
+        part = rotation - self.elastic(moment)
+        return part if abs(part) > 1e-12 * self.theta_p else 0.0
 
     def elastic(self, moment: float) -> float:
         """Elastic rotation [rad] for a peak moment [Nmm]."""
@@ -169,7 +182,7 @@ def carried(limit: Limit, curve: Curve, turn: Turning | None) -> Limit:
             limit = replace(
                 limit,
                 rotation=rotation,
-                plastic_rotation=rotation - turn.elastic(event.moment),
+                plastic_rotation=turn.plastic(rotation, event.moment),
                 rotation_capacity=rotation / turn.theta_p - 1.0,
             )
         return _conditioned(limit, curve, turn)

@@ -126,16 +126,24 @@ class Bar:
 
         Residual stress and axial force are included; 0 when they bring the section to yield already.
         """
+        return self._first_yield(residual)[0]
+
+    def first_to_yield(self, residual: Residual | None) -> str:
+        """The name of the part that yields first."""
+        return self._first_yield(residual)[1]
+
+    def _first_yield(self, residual: Residual | None) -> tuple[float, str]:
         points, initial = self.edges(residual)
         centre = self.geometry.centroid + self.elastic.axis
         first = np.array([law.yield_stress / law.modulus for law in self.laws])[points.part]
         start = self.axial / self.elastic.axial + initial
         slope = -self.sense * (points.u - centre)
         room = np.where(slope > 0.0, first - start, first + start)
-        if (np.abs(start) >= first * (1.0 - 1e-12)).any():
-            return 0.0
-        with np.errstate(divide="ignore"):
-            return float(np.min(np.where(slope == 0.0, inf, room / np.abs(slope))))
+        with np.errstate(divide="ignore", invalid="ignore"):
+            places = np.where(slope == 0.0, inf, room / np.abs(slope))
+        places[np.abs(start) >= first * (1.0 - 1e-12)] = 0.0
+        earliest = int(np.argmin(places))
+        return float(places[earliest]), self.section.parts[int(points.part[earliest])].name
 
 
 def fibres(bar: Bar, residual: Residual | None, target: float, across: int) -> kernel.Fibres:

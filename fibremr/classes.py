@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass
-from math import hypot, inf
+from math import hypot, inf, isfinite
 
 from fibremr.bending import Bar
 from fibremr.limits import en_1993_1_1_2005 as en
@@ -35,11 +35,14 @@ class Flat:
 
 @dataclass(frozen=True)
 class PartClass:
-    """Class of one part: ratio, the limit of its class (of class 3 for class 4), class and clause."""
+    """Class of one part: ratio, the limit of its class (of class 3 for class 4), class and clause.
+
+    The limit is None where the code asks for nothing, as for a part that is not compressed while elastic.
+    """
 
     part: str
     ratio: float
-    limit: float
+    limit: float | None
     number: int
     source: str
 
@@ -107,34 +110,44 @@ def classify(bar: Bar, section: Section, *, minor: bool) -> SectionClass:
 
     `section` is the one as drawn. The compressed share is that of full plasticity with the axial force,
     the stress ratio that of the elastic distribution with the compressed edge at yield; both are the
-    section's own, not those of an idealised one.
+    section's own, not those of an idealised one. The web of a hybrid girder goes by the strongest steel
+    of the section (as EN 1993-1-5 4.3(6) has it for its effective width, from memory): the safe side.
     """
     if isinstance(section.shape, shapes.TubeShape):
         shape = section.shape
         limits = en.tube(en.epsilon(bar.yields[0]))
         ratio = shape.diameter / shape.thickness
-        number = en.class_of(ratio, limits)
-        part = PartClass("wall", ratio, limits[min(number, 3) - 1], number, en.TUBULAR)
-        return SectionClass(en.NAME, number, (part,))
+        part = _class_of_part("wall", ratio, limits, en.TUBULAR)
+        return SectionClass(en.NAME, part.number, (part,))
     found = flats(section)
     if found is None:
         return SectionClass(
             en.NAME, None, (), f"no rule here for the class of this shape ({shapes.describe(section.shape)})"
         )
     strength = {p.name: fy for p, fy in zip(section.parts, bar.yields, strict=True)}
+    strongest = max(strength.values())
     worst: dict[str, PartClass] = {}
     for flat in found:
-        classed = _flat_class(bar, flat, strength[flat.part], minor=minor)
+        # a web must take the strains of the flanges that it joins, in a hybrid girder those of stronger steel
+        fy = strongest if "web" in flat.part else strength[flat.part]
+        classed = _flat_class(bar, flat, fy, minor=minor)
         if classed is None:
             continue
         kept = worst.get(flat.part)
-        if kept is None or (classed.number, classed.ratio / classed.limit) > (
-            kept.number,
-            kept.ratio / kept.limit,
-        ):
+        if kept is None or _severity(classed) > _severity(kept):
             worst[flat.part] = classed
     number = max((c.number for c in worst.values()), default=1)
     return SectionClass(en.NAME, number, tuple(worst.values()))
+
+
+def _severity(part: PartClass) -> tuple[int, float]:
+    return part.number, part.ratio / part.limit if part.limit else 0.0
+
+
+def _class_of_part(name: str, ratio: float, limits: en.Three, source: str) -> PartClass:
+    number = en.class_of(ratio, limits)
+    limit = limits[min(number, 3) - 1]
+    return PartClass(name, ratio, limit if isfinite(limit) else None, number, source)
 
 
 def _flat_class(bar: Bar, flat: Flat, strength: float, *, minor: bool) -> PartClass | None:
@@ -149,14 +162,13 @@ def _flat_class(bar: Bar, flat: Flat, strength: float, *, minor: bool) -> PartCl
     eps = en.epsilon(strength)
     psi = min(at_first, at_last) / most if most > 1e-9 * strength else -inf
     if flat.internal:
-        limits = en.internal(alpha, psi, eps) if psi > -inf else (*en.internal(alpha, -1.0, eps)[:2], inf)
-        source = en.INTERNAL
+        limits, source = en.internal(alpha, max(psi, -1e6), eps), en.INTERNAL
     else:
         tip = at_last >= at_first
-        limits = en.outstand(alpha, max(psi, -3.0), eps, tip_compressed=tip)
-        source = en.OUTSTAND
-    number = en.class_of(flat.ratio, limits)
-    return PartClass(flat.part, flat.ratio, limits[min(number, 3) - 1], number, source)
+        limits, source = en.outstand(alpha, psi, eps, tip_compressed=tip), en.OUTSTAND
+    if psi == -inf:  # not compressed while elastic: nothing is asked for class 3
+        limits = (*limits[:2], inf)
+    return _class_of_part(flat.part, flat.ratio, limits, source)
 
 
 def _compressed_share(bar: Bar, first: float, last: float) -> float:

@@ -121,15 +121,14 @@ def _own_files(path: Path) -> set[str]:
 
 
 def csv_text(columns: Mapping[str, Iterable[float]]) -> str:
-    """Columns as CSV: one header line, commas, decimal points, ten digits."""
+    """Columns as CSV: one header line, commas, decimal points, ten digits; below 1e-15 is rounding."""
     lines = [",".join(columns)]
     lines += [",".join(_number(x) for x in row) for row in zip(*columns.values(), strict=True)]
     return "\n".join(lines) + "\n"
 
 
 def _number(x: float) -> str:
-    text = f"{float(x):.10g}"
-    return "0" if text == "-0" else text
+    return "0" if abs(x) < 1e-15 else f"{float(x):.10g}"
 
 
 def json_text(record: Mapping[str, object]) -> str:

@@ -41,11 +41,12 @@ class Along:
 class Pattern(Protocol):
     """A residual-stress pattern.
 
-    `name` as in the case file, `source` and `validity` in words. `over` gives the stresses of the parts
-    that have any, by name, and raises ValueFault when the pattern does not apply to the section.
+    `name` as in the case file; `form`, `source` and `validity` in words. `over` gives the stresses of the
+    parts that have any, by name, and raises ValueFault when the pattern does not apply to the section.
     """
 
     name: ClassVar[str]
+    form: ClassVar[str]
     source: ClassVar[str]
     validity: ClassVar[str]
 
@@ -63,6 +64,10 @@ class EccsRolled:
     """
 
     name: ClassVar[str] = "ECCS rolled"
+    form: ClassVar[str] = (
+        "straight lines: flange tips and middle of the web -p, flange middles and web ends +p, "
+        "p = 0.3 x 235 MPa for h/b > 1.2 and 0.5 x 235 MPa otherwise, whatever the grade"
+    )
     source: ClassVar[str] = "ECCS Manual on Stability (1976) and ECCS publication 33 (1984), from memory"
     validity: ClassVar[str] = "rolled I and H sections with two equal flanges"
 
@@ -96,6 +101,7 @@ class Points:
 
     points: tuple[PointStress, ...]
     name: ClassVar[str] = "points"
+    form: ClassVar[str] = "straight between the points given along each part, constant through its thickness"
     source: ClassVar[str] = "given in the case"
     validity: ClassVar[str] = "any section made of plates"
 

@@ -110,7 +110,7 @@ class PartRecord:
 
     part: str
     ratio: float
-    limit: float
+    limit: float | None
     class_: int
     source: str
 

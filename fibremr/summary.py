@@ -3,102 +3,119 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
+from math import floor, log10
 from textwrap import wrap
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
     from fibremr.available import Limit
-    from fibremr.case.records import Case
+    from fibremr.case.records import Case, Steel
     from fibremr.section.catalogue import Profile
     from fibremr.tracing import TraceResult
 
+WIDTH = 98
 CAUTION = "An aid for qualified engineers; it replaces neither the code in force nor their judgement."
 NOT_IN_MODEL = (
-    "No local or lateral buckling, shear, fracture or connection is in the fibres; "
-    "the curve cannot show a moment that falls."
+    "Nominal strengths, no partial or resistance factor. The fibres know no local or lateral buckling, "
+    "shear, fracture or connection: the curve cannot show a moment that falls."
 )
 
 
 def number(value: float, digits: int = 4) -> str:
-    """A number with so many significant digits, without an exponent where it can be read without."""
-    if value == 0.0:
+    """A number with so many significant digits, written out in the range that engineers read."""
+    if abs(value) < 1e-12:
         return "0"
-    if 1e-4 <= abs(value) < 10.0**digits or abs(value) < 1e7:
-        size = len(str(int(abs(value)))) if abs(value) >= 1.0 else 1
-        places = max(0, digits - size)
-        if abs(value) < 1.0:
-            from math import floor, log10
+    if not 1e-5 <= abs(value) < 1e7:
+        return f"{value:.{digits - 1}e}"
+    return f"{value:.{max(0, digits - 1 - floor(log10(abs(value))))}f}"
 
-            places = digits - 1 - floor(log10(abs(value)))
-        return f"{value:.{places}f}"
-    return f"{value:.{digits - 1}e}"
+
+def typed(value: float) -> str:
+    """A number that was given, without digits that nobody gave."""
+    return f"{value:.6g}"
+
+
+class _Words:
+    """Values in the units of a case."""
+
+    def __init__(self, case: Case) -> None:
+        self.system = case.system
+
+    def moment(self, kilonewton_metres: float) -> str:
+        return f"{number(self.system.show(kilonewton_metres * 1e6, 'moment'))} {self.system.moment}"
+
+    def curvature(self, per_metre: float) -> str:
+        return f"{number(self.system.show(per_metre / 1e3, 'curvature'))} {self.system.curvature}"
+
+    def stress(self, megapascal: float, digits: int = 4) -> str:
+        return f"{number(self.system.show(megapascal, 'stress'), digits)} {self.system.stress}"
+
+    def length(self, millimetres: float) -> str:
+        return f"{number(self.system.show(millimetres, 'length'))} {self.system.length}"
+
+    def span(self, millimetres: float) -> str:
+        return f"{typed(self.system.show(millimetres, 'span'))} {self.system.span}"
+
+    def force(self, newton: float) -> str:
+        return f"{number(self.system.show(newton, 'force'))} {self.system.force}"
+
+    def given_force(self, newton: float) -> str:
+        return f"{typed(self.system.show(newton, 'force'))} {self.system.force}"
+
+    def power(self, value: float, exponent: int) -> str:
+        """An area, modulus or second moment: in mm2, cm3, cm4, or in inches."""
+        if self.system.name == "US":
+            return f"{number(value / 25.4**exponent)} in{exponent}"
+        return f"{number(value)} mm2" if exponent == 2 else f"{number(value / 10.0**exponent)} cm{exponent}"
+
+
+def axis_words(case: Case) -> str:
+    """Which way the section is bent, and which edge is compressed."""
+    sense = "sagging" if case.bending.sense > 0 else "hogging"
+    if case.bending.about == "major":
+        edge = "top" if case.bending.sense > 0 else "bottom"
+        return f"about y-y (major), {sense}: {edge} compressed"
+    edge = "right-hand" if case.bending.sense > 0 else "left-hand"
+    return f"about z-z (minor), {sense}: {edge} edge compressed"
+
+
+def axial_words(case: Case) -> str:
+    """The axial force, or nothing when there is none."""
+    n = case.bending.axial
+    if n == 0.0:
+        return ""
+    return f"{_Words(case).given_force(abs(n))} {'compression' if n < 0.0 else 'tension'}"
 
 
 def trace_summary(result: TraceResult, *, where: str = "") -> str:
     """A trace on one screen."""
-    r, case, s = result.record, result.case, result.case.system
-    sense = "sagging" if case.bending.sense > 0 else "hogging"
-    unit = s.moment
-
-    def m(value_kNm: float) -> str:
-        return f"{number(s.show(value_kNm * 1e6, 'moment'))} {unit}"
-
-    def k(value_per_m: float) -> str:
-        return f"{number(s.show(value_per_m / 1e3, 'curvature'))} {s.curvature}"
-
-    lines = [f"How does this section bend, and how far can it turn?  {case.title}"]
-    lines += [f"  {line}" for line in _wrapped(_answer(result))]
+    r, case, say = result.record, result.case, _Words(result.case)
+    lines = wrap(f"How does this section bend, and how far can it turn?  {case.title}", WIDTH)
+    lines += [f"  {line}" for line in wrap(_answer(result), WIDTH - 2)]
     lines.append("")
-    rows: list[tuple[str, str]] = []
-    rows.append(
-        ("Section", f"{r.section.name}, bent about its {case.bending.about} axis, {sense}{_axial(case)}")
-    )
+    axial = axial_words(case)
+    rows = [
+        ("Section", f"{r.section.name}, {axis_words(case)}; held sideways{'; ' + axial if axial else ''}")
+    ]
     rows.append(("Steel", _steel(result)))
     if r.residual is not None:
         rows.append(("Residual", _residual(result)))
-    rows.append(("First yield", f"{m(r.moments.first_yield_kNm)} at {k(r.curvatures.first_yield_per_m)}"))
-    rows.append(
-        (
-            "My, Mp",
-            f"{m(r.moments.My_kNm)}, {m(r.moments.Mp_kNm)}{_with_axial(case)}; shape factor "
-            f"{number(r.shape_factor)}{' (no axial force)' if case.bending.axial else ''}",
-        )
-    )
-    b = r.bilinear
-    bilinear = f"largest gap {number(b.largest_gap_pct, 3)} % of Mp"
-    if b.moment_at_elastic_Mp_curvature_ratio is not None:
-        bilinear += (
-            f"; the curve has {number(b.moment_at_elastic_Mp_curvature_ratio)} Mp where two lines have Mp"
-        )
-    rows.append(("Two lines", bilinear))
-    rows.append(
-        (
-            "Curve",
-            f"to {k(result.curve.curvature[-1] * 1e3)}; "
-            f"largest moment up to the limit {m(r.moments.largest_kNm)}",
-        )
-    )
+    rows += _moment_rows(result)
+    rows.append(("Two lines", _two_lines(result)))
     if r.rotation is not None:
         rows.append(
             (
                 "Rotation",
-                f"{r.rotation.setup}, span {number(s.show(r.rotation.span_m * 1e3, 'span'))} {s.span}; "
-                f"theta_p {number(r.rotation.theta_p_mrad)} mrad over the whole region",
+                f"{r.rotation.setup}, span {say.span(r.rotation.span_m * 1e3)}: "
+                f"theta_p = {number(r.rotation.theta_p_mrad)} mrad, {_region(r.rotation.setup)}",
             )
         )
-    cls = r.class_
-    if cls.section is None:
-        rows.append(("Class", f"{cls.code}: {result.classed.why_not}"))
-    else:
-        parts = ", ".join(
-            f"{p.part} {number(p.ratio, 3)} {'>' if p.class_ == 4 else '<='} {number(p.limit, 3)}"
-            for p in cls.parts
-        )
-        rows.append(("Class", f"{cls.section} by {cls.code} ({parts or 'nothing compressed'})"))
+    rows.append(("Class", _class(result)))
     rows.append(
         (
-            "Error",
-            f"{number(r.fibres.moment_error_pct, 2)} % of Mp over the whole curve, {r.fibres.count} fibres",
+            "Fibres",
+            f"{r.fibres.count}; discretisation error at most {number(r.fibres.moment_error_pct, 2)} % of Mp "
+            f"over the curve, traced to {say.curvature(result.curve.curvature[-1] * 1e3)}",
         )
     )
     lines += _rows(rows)
@@ -107,83 +124,151 @@ def trace_summary(result: TraceResult, *, where: str = "") -> str:
         lines += _labelled("Note", warning)
     if where:
         lines += _labelled("Written", where)
-    lines += ["", *_wrapped(NOT_IN_MODEL, 98), CAUTION]
+    lines += ["", *wrap(NOT_IN_MODEL, WIDTH), CAUTION]
     return "\n".join(line.rstrip() for line in lines) + "\n"
 
 
 def _answer(result: TraceResult) -> str:
-    r = result.record
-    mp = r.moments.Mp_kNm
-    s = result.case.system
-    text = (
-        f"It yields first at {number(r.moments.first_yield_kNm / mp, 3)} Mp and reaches Mp = "
-        f"{number(s.show(mp * 1e6, 'moment'))} {s.moment} "
-    )
-    text += "only in the limit" if r.moments.largest_kNm < mp else "within the trace"
-    governs = result.governs
+    """The headline: yielding, what the moment comes to, and how far it turns."""
+    r, say, governs = result.record, _Words(result.case), result.governs
+    mp, first = r.moments.Mp_kNm, r.moments.first_yield_kNm
+    limit = governs.curvature if governs is not None else None
+    elastic = limit is not None and 1e3 * limit < r.curvatures.first_yield_per_m
+    if elastic:
+        assert governs is not None
+        return (
+            f"It is still elastic when {governs.method} ends it, at "
+            f"{number((governs.moment or 0.0) / 1e6 / mp, 3)} Mp{_turns(governs)}."
+        )
+    if r.curvatures.first_yield_per_m == 0.0:
+        text = "It yields under the axial force and residual stress alone"
+    else:
+        text = f"It yields first at {say.moment(first)} ({number(first / mp, 3)} Mp)"
+    largest = r.moments.largest_kNm
+    beyond = float(result.curve.moment.max()) / 1e6
+    if largest >= mp:
+        text += f" and passes Mp = {say.moment(mp)}"
+    elif limit is not None and governs is not None:
+        text += (
+            f" and is at {number(largest / mp, 4)} Mp = {say.moment(largest)} when {governs.method} ends it"
+        )
+        if beyond >= mp:
+            text += ", and would pass Mp beyond that"
+    else:
+        text += f" and comes to {number(largest / mp, 4)} Mp = {say.moment(largest)} by the end of the trace"
     if governs is None:
-        return text + "; no limit that applies says how far it can turn."
-    r_text = number(governs.rotation_capacity or 0.0, 3)
+        return f"{text}. No limit that applies says how far it can turn."
     if governs.rotation is None:
-        assert governs.curvature is not None or governs.rotation_capacity is not None
         if governs.curvature is not None:
-            return text + f"; {governs.method} ends it at {number(governs.curvature * 1e3)} 1/m."
-        return text + f"; {governs.method} gives R = {r_text}, with no region to turn over."
-    return (
-        text + f"; it can turn {number(1e3 * governs.rotation)} mrad (R = {r_text}), "
-        f"then {governs.method} ends it."
-    )
+            return f"{text}; {governs.method} ends it at {say.curvature(1e3 * governs.curvature)}."
+        r_text = _maybe(governs.rotation_capacity)
+        return f"{text}; {governs.method} gives R = {r_text}, and there is no region to turn over."
+    return f"{text}{_turns(governs)}."
 
 
-def _axial(case: Case) -> str:
-    n = case.bending.axial
-    if n == 0.0:
+def _turns(governs: Limit) -> str:
+    if governs.rotation is None:
         return ""
-    kind = "compression" if n < 0.0 else "tension"
-    return f", {number(case.system.show(abs(n), 'force'))} {case.system.force} {kind}"
+    return f"; by {governs.method} it can turn {number(1e3 * governs.rotation)} mrad{_capacity(governs)}"
 
 
-def _with_axial(case: Case) -> str:
-    return " (Mp with the axial force, My without)" if case.bending.axial else ""
+def _capacity(limit: Limit) -> str:
+    r = limit.rotation_capacity
+    if r is None:
+        return ""
+    return f" (R = {number(r, 3)})" if r >= 0.0 else " (less than theta_p)"
 
 
 def _steel(result: TraceResult) -> str:
-    r, s = result.record.steel, result.case.system
-    text = f"{number(s.show(r.yield_MPa, 'stress'))} {s.stress}, {r.law}; {r.source}"
-    for part, fy in r.parts.items():
-        text += f"; {part} {number(s.show(fy, 'stress'))} {s.stress}"
+    case, say = result.case, _Words(result.case)
+    text = f"{say.stress(case.base.law.yield_stress)}, {case.base.law.words(say.stress)}; {case.base.source}"
+    for names, steel in _special(case).items():
+        text += f". {names}: {say.stress(steel.law.yield_stress)}, {steel.source}"
     return text
 
 
+def _special(case: Case) -> dict[str, Steel]:
+    """The parts whose steel is not that of [steel], by their joined names."""
+    groups: dict[Steel, list[str]] = {}
+    for part, steel in zip(case.section.parts, case.steels, strict=True):
+        if steel != case.base and not part.joins:
+            groups.setdefault(steel, []).append(part.name)
+    return {" and ".join(names).capitalize(): steel for steel, names in groups.items()}
+
+
 def _residual(result: TraceResult) -> str:
-    r, s = result.record.residual, result.case.system
+    r, say = result.record.residual, _Words(result.case)
     assert r is not None
+    scale = "" if r.scale == 1.0 else f" x {typed(r.scale)}"
     return (
-        f"{r.pattern} x {number(r.scale, 3)}: {number(s.show(r.peak_compression_MPa, 'stress'), 3)} to "
-        f"+{number(s.show(r.peak_tension_MPa, 'stress'), 3)} {s.stress}; "
-        f"balanced by {number(r.correction_force_pct, 2)} % "
-        f"of the squash load and {number(abs(round(r.correction_moment_pct, 9)), 2)} % of My"
+        f"{r.pattern}{scale}: {say.stress(r.peak_compression_MPa, 3)} (compression) to "
+        f"{say.stress(r.peak_tension_MPa, 3)} (tension) once balanced; as given it lacked "
+        f"{number(abs(r.correction_force_pct), 2)} % of the squash load and "
+        f"{number(abs(round(r.correction_moment_pct, 9)), 2)} % of My"
     )
+
+
+def _moment_rows(result: TraceResult) -> list[tuple[str, str]]:
+    r, bar, say = result.record, result.bar, _Words(result.case)
+    rows = []
+    if r.curvatures.first_yield_per_m > 0.0:
+        first = f"{say.moment(r.moments.first_yield_kNm)} at {say.curvature(r.curvatures.first_yield_per_m)}"
+        rows.append(("First yield", f"{first}, in the {bar.first_to_yield(result.curve.residual)}"))
+    my = f"{say.moment(r.moments.My_kNm)}"
+    if result.case.bending.axial:
+        rows.append(("My, Mp", f"{my}, {say.moment(bar.plastic_alone.moment / 1e6)} without axial force; "
+                               f"shape factor {number(r.shape_factor)}"))  # fmt: skip
+        rows.append(("Mp with N", say.moment(r.moments.Mp_kNm)))
+    else:
+        rows.append(
+            ("My, Mp", f"{my}, {say.moment(r.moments.Mp_kNm)}; shape factor {number(r.shape_factor)}")
+        )
+    return rows
+
+
+def _two_lines(result: TraceResult) -> str:
+    b = result.record.bilinear
+    side = "below" if result.gap_below else "above"
+    text = f"the curve lies up to {number(b.largest_gap_pct, 3)} % of Mp {side} the lines EI and Mp"
+    if b.moment_at_elastic_Mp_curvature_ratio is not None:
+        text += f"; it has {number(b.moment_at_elastic_Mp_curvature_ratio, 3)} Mp at the curvature Mp/(EI)"
+    return text
+
+
+def _region(setup: str) -> str:
+    if setup in ("cantilever", "end moment"):
+        return "the rotation from the peak to the far end (one side)"
+    return "the rotation between the ends of the span (both sides of the peak)"
+
+
+def _class(result: TraceResult) -> str:
+    c = result.record.class_
+    if c.section is None:
+        return f"none by {c.code}: {result.classed.why_not}"
+    parts = []
+    for p in c.parts:
+        sign = ">" if p.class_ == 4 else "<="
+        limit = "no limit" if p.limit is None else f"{number(p.ratio, 3)} {sign} {number(p.limit, 3)}"
+        parts.append(f"{p.part} {p.class_}: {limit}")
+    return f"{c.section} by {c.code} ({'; '.join(parts) or 'nothing compressed'})"
 
 
 def _limit_table(result: TraceResult) -> list[str]:
     s = result.case.system
     header = (
-        "Limit",
-        "strain %",
-        f"curv. {s.curvature}",
-        f"moment {s.moment}",
-        "rotation mrad",
-        "plastic mrad",
-        "R",
-        "",
-    )
+        "Limit", "strain %", f"curv. {s.curvature}", f"moment {s.moment}", "rotation mrad", "plastic mrad",
+        "R [-]", "",
+    )  # fmt: skip
     body = []
     notes: list[str] = []
+    end = float(result.curve.curvature[-1]) * (1.0 + 1e-9)
     for l in result.limits:
         if not l.applies:
-            notes += _labelled(l.method, f"does not apply: {l.why_not}", width=98)
+            notes += _labelled(l.method, f"does not apply: {l.why_not}")
             continue
+        remark = "governs" if l.governs else ""
+        if l.curvature is not None and l.curvature > end:
+            remark = f"{remark} beyond the trace".strip()
         body.append(
             (
                 l.method,
@@ -192,12 +277,14 @@ def _limit_table(result: TraceResult) -> list[str]:
                 _maybe(None if l.moment is None else s.show(l.moment, "moment")),
                 _maybe(l.rotation, 1e3),
                 _maybe(l.plastic_rotation, 1e3),
-                _maybe(l.rotation_capacity),
-                "governs" if l.governs else "",
+                "< 0" if (l.rotation_capacity or 0.0) < 0.0 else _maybe(l.rotation_capacity),
+                remark,
             )
         )
         if l.warning:
-            notes += _labelled(l.method, l.warning, width=98)
+            notes += _labelled(l.method, l.warning)
+    if result.case.limits.rotation_source:
+        notes += _labelled("R of own", f"from {result.case.limits.rotation_source}")
     return [*(table([header, *body]) if body else []), *notes]
 
 
@@ -206,12 +293,13 @@ def _maybe(value: float | None, factor: float = 1.0) -> str:
 
 
 def table(rows: Sequence[Sequence[str]]) -> list[str]:
-    """Rows of text in columns: the first to the left, the others to the right."""
+    """Rows of text in columns: the first and an unheaded last one to the left, the others to the right."""
     widths = [max(len(row[i]) for row in rows) for i in range(len(rows[0]))]
+    left = {0} | {i for i, head in enumerate(rows[0]) if not head}
     lines = []
     for row in rows:
         cells = [
-            cell.ljust(w) if i == 0 else cell.rjust(w)
+            cell.ljust(w) if i in left else cell.rjust(w)
             for i, (cell, w) in enumerate(zip(row, widths, strict=True))
         ]
         lines.append(("  " + "  ".join(cells)).rstrip())
@@ -229,67 +317,80 @@ def _rows(rows: Iterable[tuple[str, str]]) -> list[str]:
     return [line for label, text in rows for line in _labelled(label, text)]
 
 
-def _labelled(label: str, text: str, *, width: int = 98) -> list[str]:
-    pieces = wrap(text, width - 14) or [""]
+def _labelled(label: str, text: str) -> list[str]:
+    pieces = wrap(text, WIDTH - 14) or [""]
     if len(label) > 11:
-        return [f"  {label}: {pieces[0]}", *(f"    {p}" for p in pieces[1:])]
+        pieces = wrap(f"{label}: {text}", WIDTH - 4)
+        return [f"  {pieces[0]}", *(f"    {p}" for p in pieces[1:])]
     return [f"  {label:<12}{pieces[0]}", *(f"  {'':<12}{p}" for p in pieces[1:])]
-
-
-def _wrapped(text: str, width: int = 96) -> list[str]:
-    return wrap(text, width)
 
 
 def read_summary(case: Case) -> str:
     """A case as understood: every value with where it came from, and what it implies."""
     from fibremr.case.tables import bar_of
 
-    bar, s = bar_of(case), case.system
-    lines = [f"{case.title}: the case as understood", ""]
-    rows = [("key", "value", "where from"), *((e.key, e.value, e.origin) for e in case.entries)]
+    bar, say = bar_of(case), _Words(case)
+    lines = [*wrap(f"{case.title}: the case as understood", WIDTH), ""]
+    rows = [("key", "value", "where from")]
+    rows += [(e.key, _short(e.value, 44), e.origin) for e in case.entries]
     lines += [f"  {line}" for line in left_table(rows)]
     g = bar.geometry
-    lines += ["", f"  What it implies, about the {case.bending.about} axis:"]
-    thickness = {
-        p.name: (
-            f"{p.thickness:g} mm",
-            f"{number(st.law.yield_stress)} MPa",
-            p.steel or "steel",
-            f"{number(p.moments.area)} mm2",
-        )
-        for p, st in zip(case.section.parts, case.steels, strict=True)
-    }
-    parts = [("part", "thickness", "yield", "of", "area"), *((n, *v) for n, v in thickness.items())]
+    up = "the lowest point" if case.bending.about == "major" else "the left edge"
+    upper, lower = ("top", "bottom") if case.bending.about == "major" else ("right", "left")
+    lines += ["", f"  What it implies, bent {axis_words(case)}:"]
+    parts = [("part", "thickness", "yield", "table", "area")]
+    for p, st in zip(case.section.parts, case.steels, strict=True):
+        if not p.joins:
+            table_name = f"steel.{p.steel}" if p.steel else "steel"
+            parts.append(
+                (p.name, say.length(p.thickness), say.stress(st.law.yield_stress), table_name,
+                 say.power(p.moments.area, 2))
+            )  # fmt: skip
+    corners = [p for p in case.section.parts if p.joins]
+    if corners:
+        area = sum(p.moments.area for p in corners)
+        parts.append((f"{len(corners)} fillets or corners", "", "", "", say.power(area, 2)))
     lines += [f"    {line}" for line in left_table(parts)]
     implied = [
-        ("area", f"{number(g.area)} mm2"),
-        ("centroid", f"{number(g.centroid - g.bottom)} mm from the lowest point"),
-        ("second moment", f"{number(g.second_moment / 1e4)} cm4"),
+        ("law", case.base.law.words(say.stress)),
+        ("area", say.power(g.area, 2)),
+        ("centroid", f"{say.length(g.centroid - g.bottom)} from {up}"),
+        ("second moment", say.power(g.second_moment, 4)),
         (
             "elastic moduli",
-            f"{number(g.modulus_top / 1e3)} cm3 top, {number(g.modulus_bottom / 1e3)} cm3 bottom",
+            f"{say.power(g.modulus_top, 3)} {upper}, {say.power(g.modulus_bottom, 3)} {lower}",
         ),
         (
             "plastic modulus",
-            f"{number(bar.plastic_alone.modulus / 1e3)} cm3, "
-            f"axis {number(bar.plastic_alone.axis - g.bottom)} mm from the lowest point",
+            f"{say.power(bar.plastic_alone.modulus, 3)}, "
+            f"plastic axis {say.length(bar.plastic_alone.axis - g.bottom)} from {up}",
         ),
-        ("squash load", f"{number(s.show(bar.squash, 'force'))} {s.force}"),
-        ("My", f"{number(s.show(bar.yield_moment, 'moment'))} {s.moment}"),
-        ("Mp", f"{number(s.show(bar.plastic.moment, 'moment'))} {s.moment}{_with_axial(case)}"),
+        ("squash load", say.force(bar.squash)),
+        ("My", say.moment(bar.yield_moment / 1e6)),
+        ("Mp", say.moment(bar.plastic_alone.moment / 1e6)),
     ]
+    if case.bending.axial:
+        implied.append(("Mp with N", say.moment(bar.plastic.moment / 1e6)))
     lines += ["", *(f"    {line}" for line in left_table(implied))]
+    if case.setup is not None:
+        lines += ["", *(f"    {line}" for line in wrap(case.setup.definition, WIDTH - 4))]
+    if case.warnings:
+        lines.append("")
     for warning in case.warnings:
         lines += _labelled("Note", warning)
     return "\n".join(lines) + "\n"
 
 
+def _short(text: str, most: int) -> str:
+    return text if len(text) <= most else text[: most - 4] + " ..."
+
+
 def limit_line(limit: Limit) -> str:
     """A limit in a few words, for pictures."""
     text = limit.method
-    if limit.rotation_capacity is not None:
-        text += f" (R = {number(limit.rotation_capacity, 3)})"
-    return text
+    if limit.rotation_capacity is not None and limit.rotation_capacity >= 0.0:
+        text += f", R = {number(limit.rotation_capacity, 3)}"
+    return text + (", governs" if limit.governs else "")
 
 
 def read_record(case: Case) -> dict[str, object]:
@@ -331,17 +432,21 @@ def profile_row(profile: Profile) -> dict[str, object]:
     section = profile.section()
     ones = [1.0] * len(section.parts)
     upright, lying = geometry(section), geometry(section.turned(pi / 2.0))
+    web, flange, radius = profile.thicknesses
     return {
         "profile": profile.name,
-        "h_mm": upright.top - upright.bottom,
-        "b_mm": lying.top - lying.bottom,
+        "h_mm": round(upright.top - upright.bottom, 6),
+        "b_mm": round(lying.top - lying.bottom, 6),
+        "tw_mm": web,
+        "tf_mm": flange,
+        "r_mm": radius,
         "A_cm2": upright.area / 1e2,
-        "kg/m": profile.mass_kg_per_m,
+        "mass_kg_per_m": profile.mass_kg_per_m,
         "Iy_cm4": upright.second_moment / 1e4,
-        "Wel,y_cm3": min(upright.modulus_top, upright.modulus_bottom) / 1e3,
-        "Wpl,y_cm3": plastic(section, ones).modulus / 1e3,
+        "Wely_cm3": min(upright.modulus_top, upright.modulus_bottom) / 1e3,
+        "Wply_cm3": plastic(section, ones).modulus / 1e3,
         "Iz_cm4": lying.second_moment / 1e4,
-        "Wel,z_cm3": min(lying.modulus_top, lying.modulus_bottom) / 1e3,
-        "Wpl,z_cm3": plastic(section.turned(pi / 2.0), ones).modulus / 1e3,
+        "Welz_cm3": min(lying.modulus_top, lying.modulus_bottom) / 1e3,
+        "Wplz_cm3": plastic(section.turned(pi / 2.0), ones).modulus / 1e3,
         "standard": profile.standard,
     }

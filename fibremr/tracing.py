@@ -40,6 +40,18 @@ class TraceResult:
     record: results.TraceRecord
 
     @property
+    def gap_below(self) -> bool:
+        """Whether the largest gap to the two straight lines is one where the curve lies below them."""
+        gap = self._gap
+        return bool(gap[np.argmax(np.abs(gap))] < 0.0)
+
+    @cached_property
+    def _gap(self) -> Array:
+        upto = self.record.curvatures.largest_per_m / 1e3 * (1.0 + 1e-12)
+        within = self.curve.curvature <= upto
+        return gap_to_two_lines(self.bar, self.curve.curvature[within], self.curve.moment[within])
+
+    @property
     def governs(self) -> Limit | None:
         """The limit that governs, if any."""
         return next((l for l in self.limits if l.governs), None)
@@ -79,12 +91,12 @@ class TraceResult:
         if self.turn is None:
             return {}
         c, turn = self.curve, self.turn
-        elastic = np.array([turn.elastic(m) for m in c.moment])
+        plastic = [turn.plastic(float(r), float(m)) for r, m in zip(turn.rotation, c.moment, strict=True)]
         return {
             "moment-rotation": {
                 "moment_kNm": c.moment / 1e6,
                 "rotation_mrad": 1e3 * turn.rotation,
-                "plastic_rotation_mrad": 1e3 * np.maximum(turn.rotation - elastic, 0.0),
+                "plastic_rotation_mrad": 1e3 * np.array(plastic),
                 "curvature_per_m": c.curvature * 1e3,
                 "deflection_mm": turn.deflection,
             }
@@ -218,6 +230,15 @@ def _record(
         warnings.append("the trace ends before first yield")
     else:
         first_moment = curve.event(curve.at_curvature(first)).moment
+    if classed.number == 4:
+        warnings.append(
+            "class 4: a part buckles before the section yields; this is the curve of a section held against "
+            "local buckling, and neither Mp nor a rotation may be used"
+        )
+    elif classed.number == 3:
+        warnings.append("class 3: local buckling may come before Mp; the code allows My, and no rotation")
+    elif classed.number == 2:
+        warnings.append("class 2: the code allows Mp, and no rotation")
     if curve.ended_by_law:
         warnings.append(
             f"the curve ends at {curve.curvature[-1] * 1e3:.4g} 1/m, "
@@ -227,6 +248,13 @@ def _record(
         warnings.append("rotations are of first order: the axial force does not act on the deflected shape")
     if case.setup is not None and turn is None:
         warnings.append("no rotation: the axial force alone bends the section, so the curve starts off zero")
+    if turn is not None and governs is not None and governs.curvature is not None:
+        sag = turn.deflection_at(curve.at_curvature(min(governs.curvature, float(curve.curvature[-1]))))
+        if sag > turn.setup.span / 20.0:
+            warnings.append(
+                f"the deflection at the governing limit, {sag:.0f} mm, exceeds a twentieth of the span: "
+                "outside the theory of small displacements"
+            )
     if all(l.method not in available.named(case.limits) or not l.applies for l in limits):
         warnings.append("no limit that applies is asked for: the curve says nothing of how far it can turn")
     base = case.base
@@ -315,6 +343,13 @@ def _residual_record(residual: Residual | None, scale: float) -> results.Residua
     )
 
 
+def gap_to_two_lines(bar: Bar, curvature: Array, moment: Array) -> Array:
+    """How far a curve lies above E I and then Mp [Nmm], `(point,)`; rounding counts as nothing."""
+    mp = bar.plastic.moment
+    gap = moment - np.minimum(bar.elastic.bending * curvature, mp)
+    return np.where(np.abs(gap) < 1e-10 * mp, 0.0, gap)
+
+
 def _bilinear(
     bar: Bar, curve: Curve, curvature: Array, moment: Array, at_mp: float
 ) -> results.BilinearRecord:
@@ -324,7 +359,7 @@ def _bilinear(
     x_u - sqrt(x_u^2 - 2 A/K).
     """
     ei, mp = bar.elastic.bending, bar.plastic.moment
-    gap = float(np.max(np.abs(moment - np.minimum(ei * curvature, mp)))) / mp
+    gap = float(np.max(np.abs(gap_to_two_lines(bar, curvature, moment)))) / mp
     ratio = None
     if at_mp <= curve.curvature[-1]:
         ratio = curve.event(curve.at_curvature(at_mp)).moment / mp

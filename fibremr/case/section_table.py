@@ -27,7 +27,12 @@ def read_section(table: Table) -> Section | None:
         name = table.text("profile")
         table.finish(owner="a section by profile, whose dimensions come from the tables")
         try:
-            return find(name).section() if name is not None else None
+            if name is None:
+                return None
+            profile = find(name)
+            origin = f"table of profiles, {profile.standard} (from memory)"
+            table.notes.entry((*table.path, "dimensions"), f"{profile.name}: {profile.dimensions}", origin)
+            return profile.section()
         except ValueFault as error:
             table.fail("profile", error)
             return None

@@ -232,6 +232,10 @@ def _resolve(spec: _SteelSpec, thickness: float, made: str) -> Steel | None:
         return None
     if spec.hardening is not None and law_name != "bilinear":
         table.notes.warnings.append(f"{where}.hardening is not used by the law {law_name}")
+    if strength is not None and "hollow" in strength.product and made not in (grades.HOLLOW, grades.ROUND):
+        table.notes.warnings.append(
+            f"{strength.grade} is a grade of hollow sections, and this section is none"
+        )
     if not 190e3 <= modulus <= 215e3:
         table.notes.warnings.append(f"{where}: a modulus of {modulus / 1e3:g} GPa is unusual for steel")
     source = strength.source if strength else "yield strength given in the case"

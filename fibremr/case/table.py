@@ -75,6 +75,7 @@ class Table:
         self.path = path
         self.data = data
         self.known: list[str] = []
+        self.later: list[str] = []
         self.sound = True
 
     def fail(self, key: str, error: ValueFault) -> None:
@@ -87,7 +88,8 @@ class Table:
                 value = value[step]  # type: ignore[index]
             except (KeyError, IndexError, TypeError):
                 value = None  # type: ignore[assignment]
-        self.notes.fault(path, error, shown(value) if value is not None and key else "")
+        found = shown(value) if value is not None and key else ""
+        self.notes.fault(path, error, found if len(found) <= 60 else found[:56] + " ...")
 
     def has(self, key: str) -> bool:
         """Whether the key is given; it then counts as known."""
@@ -245,10 +247,13 @@ class Table:
             return None
         value = self.data[key]
         items = [value] if isinstance(value, str) else value
-        if not isinstance(items, list) or not items or not all(isinstance(v, str) for v in items):
+        if not isinstance(items, list) or not all(isinstance(v, str) for v in items):
             self.fail(
                 key, ValueFault("not a list of texts", allowed='such as ["class rotation"]', code="type")
             )
+            return None
+        if not items:
+            self.fail(key, ValueFault("an empty list; leave the key out for the default", code="type"))
             return None
         self.notes.entry((*self.path, key), shown(value), self._origin(key))
         return items
@@ -256,13 +261,14 @@ class Table:
     def refuse_later(self, keys: Sequence[str]) -> None:
         """Keys of the interface that this version does not serve yet."""
         for key in keys:
-            if self.has(key):
+            if key in self.data:
+                self.later.append(key)
                 self.fail(key, ValueFault("not available in this version", code="not-available"))
 
     def finish(self, *, owner: str = "") -> None:
         """Report the keys that nothing has asked for."""
         for key in self.data:
-            if key not in self.known:
+            if key not in self.known and key not in self.later:
                 where = owner or (f"[{dotted(self.path)}]" if self.path else "a case")
                 self.fail(
                     key,

@@ -72,7 +72,9 @@ def read_tables(root: Table, *, file: str, sha256: str) -> Case | None:
     _together(case, bending_table, residual_table)
     if notes.faults:
         return None
-    return replace(case, entries=tuple(notes.entries), warnings=tuple(notes.warnings))
+    order = {name: i for i, name in enumerate(root.data)}
+    entries = sorted(notes.entries, key=lambda e: order.get(e.key.split(".")[0], len(order)))
+    return replace(case, entries=tuple(entries), warnings=tuple(dict.fromkeys(notes.warnings)))
 
 
 def bar_of(case: Case) -> Bar:

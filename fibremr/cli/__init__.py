@@ -97,9 +97,12 @@ def run(arguments: list[str]) -> int:
         return report(error.faults(), error.exit_status)
     except click.exceptions.Exit as error:
         return error.exit_code
+    except click.exceptions.NoArgsIsHelpError as error:
+        click.echo(error.format_message())
+        return 0
     except click.UsageError as error:
         hint = f"`{error.ctx.command_path} --help` shows what there is" if error.ctx else ""
-        return report([Fault("usage", error.format_message(), suggestion=hint)], 2)
+        return report([Fault("usage", error.format_message().rstrip("."), suggestion=hint)], 2)
     except click.ClickException as error:
         return report([Fault("usage", error.format_message())], 2)
     except (KeyboardInterrupt, click.Abort):

@@ -32,6 +32,13 @@ def json_option(function: F) -> F:
     )(function)  # fmt: skip
 
 
+def rows_option(function: F) -> F:
+    """--json for commands that only show something."""
+    return click.option("--json", "as_json", is_flag=True, help="The same as JSON on standard output.")(
+        function
+    )
+
+
 def analysis_options(function: F) -> F:
     """Where results go and how much is said."""
     for option in (

@@ -4,12 +4,12 @@ from __future__ import annotations
 
 import click
 
-from fibremr.cli.options import case_argument, json_option, load
+from fibremr.cli.options import case_argument, load, rows_option
 
 
 @click.command()
 @case_argument
-@json_option
+@rows_option
 def read(case: str, settings: tuple[str, ...], as_json: bool) -> None:
     """The case as understood: every value with its unit, where it came from, and what it implies.
 

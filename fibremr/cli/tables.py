@@ -6,7 +6,7 @@ from typing import Any
 
 import click
 
-from fibremr.cli.options import json_option
+from fibremr.cli.options import rows_option
 
 
 def _show(rows: list[dict[str, Any]], as_json: bool, *, heading: str = "", footing: str = "") -> None:
@@ -29,6 +29,8 @@ def _show(rows: list[dict[str, Any]], as_json: bool, *, heading: str = "", footi
 def _cell(value: object) -> str:
     if value is None:
         return "-"
+    if isinstance(value, float) and value == round(value, 1) and abs(value) < 1e4:
+        return f"{value:g}"
     return (
         f"{value:.4g}"
         if isinstance(value, float) and abs(value) < 1e4
@@ -37,9 +39,9 @@ def _cell(value: object) -> str:
 
 
 @click.command()
-@click.argument("text", default="", metavar="[TEXT]")
-@json_option
-def profiles(text: str, as_json: bool) -> None:
+@click.argument("words", nargs=-1, metavar="[TEXT]")
+@rows_option
+def profiles(words: tuple[str, ...], as_json: bool) -> None:
     """Profiles of the tables whose name holds TEXT (all of them without it), with exact properties.
 
     Dimensions and properties in mm and cm, y about the horizontal axis, z about the vertical one.
@@ -48,39 +50,34 @@ def profiles(text: str, as_json: bool) -> None:
     from fibremr.section import catalogue
     from fibremr.summary import profile_row
 
+    text = " ".join(words)
     wanted = catalogue.spelling(text)
     every = catalogue.profiles()
     found = [p for p in every if any(wanted in catalogue.spelling(n) for n in (p.name, *p.also))]
     exact = [p for p in found if wanted in {catalogue.spelling(n) for n in (p.name, *p.also)}]
     if not found:
-        from fibremr.errors import closest
-
-        raise CaseError(
-            [
-                Fault(
-                    "unknown-name",
-                    f'no profile has "{text}" in its name',
-                    suggestion=closest(text, [p.name for p in every]),
-                )
-            ]
+        fault = Fault(
+            "unknown-name", f'no profile has "{text}" in its name', suggestion=catalogue.nearest(text)
         )
+        raise CaseError([fault])
     _show(
         [profile_row(p) for p in exact or found],
         as_json,
         footing="Properties are exact for the dimensions, root fillets and corner radii included. The\n"
         "tables are from memory of the standards named; each row was checked by its mass and, where known,\n"
-        "its printed properties.",
+        "its printed properties. A tee `T IPE 300 half` is half an IPE 300 with its flange on top.",
     )
 
 
 @click.command()
-@click.argument("text", default="", metavar="[TEXT]")
-@json_option
-def steels(text: str, as_json: bool) -> None:
+@click.argument("words", nargs=-1, metavar="[TEXT]")
+@rows_option
+def steels(words: tuple[str, ...], as_json: bool) -> None:
     """Steel grades of the table whose name or standard holds TEXT, with strengths by thickness."""
     from fibremr.errors import CaseError, Fault
     from fibremr.steel import grades
 
+    text = " ".join(words)
     wanted = grades.spelling(text)
 
     def spellings(s: grades.Strength) -> set[str]:
@@ -110,22 +107,24 @@ def steels(text: str, as_json: bool) -> None:
             for s in found
         ],
         as_json,
-        footing="From memory of the standards named: compare with the printed standard before use.",
+        footing="From memory of the standards named: compare with the printed standard before use.\n"
+        "A case takes EN 1993-1-1 Table 3.1 where it has the grade, unless [steel] says otherwise, as by\n"
+        'standard = "EN 10025-2".',
     )  # fmt: skip
 
 
 @click.command()
-@json_option
+@rows_option
 def patterns(as_json: bool) -> None:
     """Residual-stress patterns, with source and validity."""
     from fibremr.residual import PATTERNS
 
-    rows = [{"pattern": p.name, "source": p.source, "validity": p.validity} for p in PATTERNS]
+    rows = [{"pattern": p.name, "form": p.form, "source": p.source, "validity": p.validity} for p in PATTERNS]
     _words(rows, as_json)
 
 
 @click.command()
-@json_option
+@rows_option
 def methods(as_json: bool) -> None:
     """Methods that limit the rotation of a section, with what they give, source and validity."""
     from fibremr.limits import METHODS

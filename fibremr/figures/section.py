@@ -27,7 +27,7 @@ def _trail(outline: Outline, scale: float) -> Trail:
         ((l.v1, l.u1), [(l.v1, l.u1), (l.v2, l.u2)]) for l in outline.lines
     ]
     for a in outline.arcs:
-        angles = np.linspace(a.start, a.end, 40)
+        angles = np.linspace(a.start, a.end, max(24, int(abs(a.end - a.start) / 0.02)))
         points = list(zip(a.v + a.radius * np.cos(angles), a.u + a.radius * np.sin(angles), strict=True))
         pieces.append((points[0], points))
     vertices: list[tuple[float, float]] = []
@@ -51,7 +51,7 @@ def _trail(outline: Outline, scale: float) -> Trail:
 
 def section(result: TraceResult) -> Figure:
     """The section as drawn, with its neutral axes and its residual stress along the plates."""
-    case, bar, residual = result.case, result.bar, result.curve.residual
+    case, residual = result.case, result.curve.residual
     s = case.system
     figure = new_figure(result, 6.0, 4.6, "section")
     axes = figure.subplots(gridspec_kw={"left": 0.1, "right": 0.97, "bottom": 0.19, "top": 0.83})
@@ -61,7 +61,7 @@ def section(result: TraceResult) -> Figure:
         face = "#c9d0ce" if not part.steel else "#a9b3b2"
         axes.add_patch(PathPatch(_trail(part.outline, scale), facecolor=face, edgecolor=face, linewidth=0.4))
     low, high = drawn.extent
-    turned = drawn.turned(-np.pi / 2.0)
+    turned = drawn.turned(np.pi / 2.0)
     left, right = turned.extent
     size = max(high - low, right - left)
     if residual is not None:
@@ -81,36 +81,7 @@ def section(result: TraceResult) -> Figure:
             f"{residual.name}: {low_stress} to +{high_stress} {s.stress}",
             fontsize=8, loc="left", color=GREY,
         )  # fmt: skip
-    g = bar.geometry
-    if case.bending.about == "major":
-        lines = [("centroid", g.centroid, 0), ("plastic axis", bar.plastic.axis, 1)]
-        for text, z, i in lines:
-            axes.axhline(
-                z * scale, color=(GREY, INK)[i], linewidth=0.8, linestyle=((0, (6, 2, 1, 2)), (0, (2, 2)))[i]
-            )
-            axes.annotate(
-                text,
-                (1.0, z * scale),
-                xycoords=("axes fraction", "data"),
-                fontsize=7.5,
-                ha="right",
-                va=("bottom", "top")[i],
-                color=(GREY, INK)[i],
-            )
-    else:
-        for text, y, i in [("centroid", g.centroid, 0), ("plastic axis", bar.plastic.axis, 1)]:
-            axes.axvline(
-                y * scale, color=(GREY, INK)[i], linewidth=0.8, linestyle=((0, (6, 2, 1, 2)), (0, (2, 2)))[i]
-            )
-            axes.annotate(
-                text,
-                (y * scale, 1.0),
-                xycoords=("data", "axes fraction"),
-                fontsize=7.5,
-                va="bottom",
-                ha=("right", "left")[i],
-                color=(GREY, INK)[i],
-            )
+    _axes_lines(axes, result, scale, size)
     pad = 0.28 * size
     middle = (left + right) / 2.0
     half = max((right - left) / 2.0 + pad, 0.75 * (high - low) / 2.0 + pad)
@@ -120,6 +91,45 @@ def section(result: TraceResult) -> Figure:
     axes.set_xlabel(f"y [{s.length}]")
     axes.set_ylabel(f"z [{s.length}]")
     return figure
+
+
+def _axes_lines(axes: Axes, result: TraceResult, scale: float, size: float) -> None:
+    """The centroid and the plastic neutral axis, and which edge is compressed."""
+    g, case = result.bar.geometry, result.case
+    upright = case.bending.about == "major"
+    places = [("centroid", g.centroid), ("plastic axis", result.bar.plastic.axis)]
+    if abs(places[0][1] - places[1][1]) < 0.015 * size:
+        places = [("centroid and plastic axis", places[0][1])]
+    places.sort(key=lambda place: place[1])
+    for i, (text, at) in enumerate(places):
+        style = (0, (6, 2, 1, 2)) if text.startswith("centroid") else (0, (2, 2))
+        line = axes.axhline if upright else axes.axvline
+        line(at * scale, color=GREY, linewidth=0.8, linestyle=style)
+        upper = i == len(places) - 1
+        if upright:
+            axes.annotate(
+                text, (0.0, at * scale), xycoords=("axes fraction", "data"), fontsize=7.5, ha="left",
+                va="bottom" if upper else "top",
+            )  # fmt: skip
+        else:
+            axes.annotate(
+                text, (at * scale, 0.0), xycoords=("data", "axes fraction"), fontsize=7.5, va="bottom",
+                ha="left" if upper else "right", xytext=(2 if upper else -2, 1), textcoords="offset points",
+            )  # fmt: skip
+    compressed = g.top if case.bending.sense > 0 else g.bottom
+    for text, edge in (("compressed", compressed), ("pulled", g.top + g.bottom - compressed)):
+        outside = 3 if edge == g.top else -3
+        if upright:
+            axes.annotate(
+                text, (0.0, edge * scale), xycoords=("axes fraction", "data"), fontsize=7.5, color=GREY,
+                va="center", xytext=(4, 0), textcoords="offset points",
+            )  # fmt: skip
+        else:
+            axes.annotate(
+                text, (edge * scale, 1.0), xycoords=("data", "axes fraction"), fontsize=7.5, color=GREY,
+                va="top", ha="left" if outside > 0 else "right", xytext=(outside, -2),
+                textcoords="offset points",
+            )  # fmt: skip
 
 
 def _residual_diagrams(axes: Axes, result: TraceResult, reach: float, scale: float) -> tuple[float, float]:

@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from fibremr.figures.style import GREY, INK, PALE, RUST, new_figure
+from fibremr.figures.style import GREY, RUST, new_figure
 from fibremr.summary import number
 
 if TYPE_CHECKING:
@@ -15,28 +15,28 @@ if TYPE_CHECKING:
     from fibremr import kernel
     from fibremr.tracing import TraceResult
 
+BAND = "#7d8789"
+
 
 def _stages(result: TraceResult) -> list[tuple[str, kernel.State]]:
-    """States at first yield, My, 90 % of Mp and the end of what may be used of the curve."""
-    c, bar = result.curve, result.bar
-    found: list[tuple[str, kernel.State]] = []
-    first = result.record.curvatures.first_yield_per_m / 1e3
-    if first <= c.curvature[-1]:
-        found.append(("first yield", c.at_curvature(first)))
+    """States at first yield, My, 90 % of Mp and the end of what may be used of the curve, in their order."""
+    c, bar, governs = result.curve, result.bar, result.governs
+    end = float(c.curvature[-1])
+    last = ("end of the trace", end)
+    if governs is not None and governs.curvature is not None and governs.curvature <= end * (1 + 1e-9):
+        last = (f"at the limit, {governs.method}", min(governs.curvature, end))
+    places = [("first yield", result.record.curvatures.first_yield_per_m / 1e3)]
     for text, target in (("M = My", bar.yield_moment), ("M = 0.9 Mp", 0.9 * bar.plastic.moment)):
         state = c.first(c.moment - target, lambda s, m=target: c.event(s).moment - m)  # type: ignore[misc]
         if state is not None:
-            found.append((text, state))
-    governs = result.governs
-    if (
-        governs is not None
-        and governs.curvature is not None
-        and governs.curvature <= c.curvature[-1] * (1 + 1e-9)
-    ):
-        found.append((f"at the limit, {governs.method}", c.at_curvature(governs.curvature)))
-    else:
-        found.append(("end of the trace", c.states[-1]))
-    return found
+            places.append((text, c.event(state).curvature))
+    found: list[tuple[str, float]] = []
+    for text, k in sorted((p for p in places if p[1] < last[1]), key=lambda place: place[1]):
+        if found and k <= found[-1][1] * (1 + 1e-6):
+            found[-1] = (f"{found[-1][0]}, {text}", found[-1][1])
+        else:
+            found.append((text, k))
+    return [(text, c.at_curvature(k)) for text, k in (*found, last)]
 
 
 def stress_stages(result: TraceResult) -> Figure:
@@ -59,7 +59,7 @@ def stress_stages(result: TraceResult) -> Figure:
     for axes, (text, state) in zip(every, stages, strict=True):
         stress = state.stress[order, 0] * scale_s
         least, most = np.minimum.reduceat(stress, starts), np.maximum.reduceat(stress, starts)
-        axes.fill_betweenx(heights * scale_z, least, most, facecolor=PALE, edgecolor=INK, linewidth=1.1)
+        axes.fill_betweenx(heights * scale_z, least, most, facecolor=BAND, edgecolor=BAND, linewidth=0.9)
         axes.axvline(0.0, color=GREY, linewidth=0.7)
         for fy in sorted({law.yield_stress for law in bar.laws}):
             for sign in (-1.0, 1.0):
@@ -72,13 +72,20 @@ def stress_stages(result: TraceResult) -> Figure:
         )  # fmt: skip
         axes.set_xlim(-1.12 * widest, 1.12 * widest)
         axes.set_xlabel(f"stress [{s.stress}]")
-        axes.locator_params(axis="x", nbins=4, prune="both")
-    across = "depth" if result.case.bending.about == "major" else "width"
-    every[0].set_ylabel(f"along the {across}, from the lowest point [{s.length}]")
-    figure.supxlabel(
-        "compression negative; dashed: yield strength; the band spans the stresses at one height, "
-        "which residual stress makes differ" if result.curve.residual is not None
-        else "compression negative; dashed: yield strength",
-        fontsize=7.5, color=GREY,
-    )  # fmt: skip
+        tick = 10.0 ** np.floor(np.log10(widest))
+        tick *= np.floor(widest / tick)
+        axes.set_xticks([-tick, 0.0, tick])
+    across = (
+        "depth, from the lowest point"
+        if result.case.bending.about == "major"
+        else "width, from the left edge"
+    )
+    every[0].set_ylabel(f"along the {across} [{s.length}]")
+    strengths = sorted({law.yield_stress for law in bar.laws})
+    caption = "compression negative; dashed: yield strength " + " and ".join(
+        f"{number(fy * scale_s, 3)} {s.stress}" for fy in strengths
+    )
+    if c.residual is not None:
+        caption += "; a band spans the stresses at one height, which residual stress makes differ"
+    figure.text(0.012, 0.02, caption, fontsize=7.5, color=GREY)
     return figure

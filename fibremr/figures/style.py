@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+from textwrap import shorten
 from typing import TYPE_CHECKING, Any
 
 from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.figure import Figure
 
-from fibremr.summary import number
+from fibremr.summary import axial_words, axis_words
 
 if TYPE_CHECKING:
     from fibremr.tracing import TraceResult
@@ -40,12 +41,12 @@ def new_figure(result: TraceResult, width: float, height: float, what: str) -> F
     figure = Figure(figsize=(width, height))
     FigureCanvasAgg(figure)
     r, case = result.record, result.case
-    sense = "sagging" if case.bending.sense > 0 else "hogging"
-    axial = ""
-    if case.bending.axial:
-        kind = "compression" if case.bending.axial < 0 else "tension"
-        axial = f", {number(case.system.show(abs(case.bending.axial), 'force'))} {case.system.force} {kind}"
-    figure.text(0.012, 0.985, case.title, fontsize=10, va="top")
-    under = f"{what}: {r.section.name}, {case.bending.about} axis, {sense}{axial}"
+    across = int(72 * width / 5.9)  # letters of the title's size that fit
+    figure.text(0.012, 0.985, shorten(case.title, across, placeholder=" ..."), fontsize=10, va="top")
+    axial = axial_words(case)
+    under = f"{what}: {r.section.name}, {axis_words(case)}{', ' + axial if axial else ''}"
+    if r.class_.section is not None:
+        under += f"; class {r.class_.section}"
+    under = shorten(under, int(72 * width / 4.7), placeholder=" ...")
     figure.text(0.012, 0.985 - 0.20 / height, under, fontsize=8, va="top", color=GREY)
     return figure

@@ -35,6 +35,39 @@ class Profile:
     standard: str
     also: tuple[str, ...] = ()
 
+    @property
+    def thicknesses(self) -> tuple[float, float | None, float | None]:
+        """Thickness of web or wall, of flange, and root or outer corner radius [mm]; None: there is none."""
+        match self.shape:
+            case IShape() as s:
+                return s.web.thickness, s.top_flange.thickness, s.root_radius
+            case ChannelShape() | TShape() as s:
+                return s.web.thickness, s.flange.thickness, s.root_radius
+            case BoxShape() as s:
+                return s.web.thickness, s.flange.thickness, s.corner_radius
+            case AngleShape() as s:
+                return s.thickness, s.thickness, s.root_radius
+            case TubeShape() as s:
+                return s.thickness, None, None
+        raise TypeError(self.shape)
+
+    @property
+    def dimensions(self) -> str:
+        """The dimensions in words [mm]."""
+        web, flange, radius = self.thicknesses
+        match self.shape:
+            case IShape() as s:
+                h, b = s.height, s.top_flange.width
+            case ChannelShape() | TShape() as s:
+                h, b = s.height, s.flange.width
+            case BoxShape() | AngleShape() as s:
+                h, b = s.height, s.width
+            case TubeShape() as s:
+                return f"diameter {s.diameter:g}, wall {web:g} mm"
+            case _:
+                raise TypeError(self.shape)
+        return f"h {h:g}, b {b:g}, tw {web:g}, tf {flange:g}, r {radius:g} mm"
+
     def section(self) -> Section:
         """The section with this profile's dimensions."""
         source = f"table of profiles, {self.standard}"
@@ -54,15 +87,32 @@ def find(text: str) -> Profile:
     by_key = _index()[1]
     found = by_key.get(spelling(text))
     if found is None:
-        names = [p.name for p in profiles()]
         raise ValueFault(
             "no such profile in the tables",
             key="profile",
             allowed="a name that `fibremr profiles` lists",
-            suggestion=closest(text, names),
+            suggestion=nearest(text),
             code="unknown-name",
         )
     return found
+
+
+def nearest(text: str) -> str:
+    """A suggestion for an unknown name: the nearest size of its series, or the nearest name."""
+    wanted = spelling(text)
+    series, sizes = re.sub(r"[^A-Z].*", "", wanted), _sizes(wanted)
+    family = [p for p in profiles() if re.sub(r"[^A-Z].*", "", spelling(p.name)) == series]
+    if not series or not family or not sizes:
+        return closest(text, [p.name for p in profiles()])
+
+    def distance(p: Profile) -> tuple[float, ...]:
+        return tuple(abs(a - b) for a, b in zip(_sizes(spelling(p.name)), sizes, strict=False))
+
+    return f'did you mean "{min(family, key=distance).name}"?'
+
+
+def _sizes(name: str) -> list[float]:
+    return [float(x) for x in re.findall(r"\d+(?:\.\d+)?", name)]
 
 
 def profile(text: str) -> Section:
@@ -124,7 +174,9 @@ def _read() -> Iterator[Profile]:
                 float(row["ro_mm"]),
                 float(row["ri_mm"]),
             )
-        yield Profile(row["designation"], row["kind"], shape, float(row["mass_kg_per_m"]), row["standard"])
+        square = (f"SHS {row['b_mm']}x{row['t_mm']}",) if row["kind"] == "SHS" else ()
+        mass = float(row["mass_kg_per_m"])
+        yield Profile(row["designation"], row["kind"], shape, mass, row["standard"], square)
     for row in rows("tees_angles.csv"):
         mass, standard = float(row["mass_kg_per_m"]), row["standard"]
         h, b, tf = float(row["h_mm"]), float(row["b_mm"]), float(row["tf_mm"])

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, field
 from math import inf
 
@@ -47,6 +48,13 @@ class Bilinear:
         if self.hardening:
             return "EN 1993-1-5 C.6(1)c: linear strain hardening (from memory)"
         return "EN 1993-1-5 C.6(1)a: elastic-plastic without strain hardening (from memory)"
+
+    def words(self, stress: Callable[[float], str]) -> str:
+        """The law in words."""
+        if not self.hardening:
+            return f"elastic-plastic, E = {stress(self.modulus)}"
+        slope = f"{stress(self.hardening)} (E/{self.modulus / self.hardening:.4g})"
+        return f"bilinear, E = {stress(self.modulus)}, hardening {slope}"
 
     def start(self, shape: tuple[int, ...]) -> History:
         """History of virgin steel."""

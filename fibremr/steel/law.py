@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from typing import Protocol, TypeAlias
 
 import numpy as np
@@ -45,6 +46,10 @@ class Law(Protocol):
 
     @property
     def source(self) -> str: ...  # noqa: D102
+
+    def words(self, stress: Callable[[float], str]) -> str:
+        """The law in words, for a reader; `stress` writes a stress [MPa] with its unit."""
+        ...
 
     def start(self, shape: tuple[int, ...]) -> History:
         """History of virgin steel for arrays of that shape, usually `(fibre, sample)`."""

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -71,6 +72,14 @@ class QuadLinear(Curve):
     def _last_slope(self) -> float:
         at_knee = self.yield_stress + self.hardening * (self.knee - self.plateau_end)
         return (self.ultimate - at_knee) / (self.largest_strain - self.knee)
+
+    def words(self, stress: Callable[[float], str]) -> str:
+        """The law in words."""
+        return (
+            f"quad-linear, E = {stress(self.modulus)}: plateau to {100 * self.plateau_end:.3g} %, then "
+            f"{stress(self.hardening)} to {100 * self.knee:.3g} %, {stress(self.ultimate)} at "
+            f"{100 * self.largest_strain:.3g} %, where the law ends"
+        )
 
     @property
     def largest_stress(self) -> float:

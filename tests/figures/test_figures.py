@@ -55,7 +55,7 @@ def test_moment_curvature(deck: TraceResult) -> None:
     text = words(figure)
     for word in (
         *(deck.case.title, "IPE 450", "curvature [1/m]", "moment [kNm]", "first yield", "M = My", "Mp/(EI)"),
-        "class rotation (governs)",
+        "1 class rotation, R = 3.00, governs",
     ):
         assert word in text
     marks = [l for l in knee.get_lines() if l.get_marker() == "o"]
@@ -74,7 +74,7 @@ def test_moment_rotation(deck: TraceResult) -> None:
     two_x, two_y = line(axes, "two straight lines")
     assert two_x[1] == pytest.approx(deck.record.rotation.theta_p_mrad)
     assert two_y[1] == pytest.approx(deck.record.moments.Mp_kNm)
-    for word in ("rotation over the whole hinge region [mrad]", "theta_p", "R = 3.00"):
+    for word in ("rotation over the hinge region, both sides of the peak [mrad]", "theta_p", "R = 3.00"):
         assert word in words(figure)
 
 

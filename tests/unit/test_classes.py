@@ -168,3 +168,31 @@ def test_hollow_sections() -> None:
 @pytest.mark.parametrize("name", ["UPE 200", "L 100x100x10"])
 def test_no_rule_for_the_shape(name: str) -> None:
     assert number(name, 355.0) is None
+
+
+@pytest.mark.parametrize("name", ["IPE 300", "HEA 200", "T IPE 300 half", "SHS 100x100x5", "RHS 200x100x8"])
+def test_every_force_and_sense_has_a_class_without_infinities(name: str) -> None:
+    section = profile(name)
+    alone = builders.bar(section, Bilinear(210e3, 355.0))
+    for n in (-0.95, -0.7, -0.3, 0.0, 0.3, 0.7, 0.95):
+        for sense in (1, -1):
+            for minor in (False, True):
+                bar = builders.bar(
+                    section, Bilinear(210e3, 355.0), axial=n * alone.squash, sense=sense, minor=minor
+                )
+                found = classify(bar, section, minor=minor)
+                assert found.number in (1, 2, 3, 4)
+                for part in found.parts:
+                    assert part.limit is None or 0.0 < part.limit < 1e9
+                    assert part.limit is not None or part.number in (1, 3)  # plastic, elastic tension
+
+
+def test_web_of_a_hybrid_girder_goes_by_the_stronger_flanges() -> None:
+    both = shapes.Flange(200.0, 20.0, "flange")
+    section = shapes.build(shapes.IShape(600.0, shapes.Web(9.0), both, both))
+    laws = [Bilinear(210e3, 460.0 if p.steel else 275.0) for p in section.parts]
+    found = classify(builders.bar(section, laws), section, minor=False)
+    web = next(p for p in found.parts if p.part == "web")
+    assert web.limit == pytest.approx(83.0 * en.epsilon(460.0)) or web.limit == pytest.approx(
+        124.0 * en.epsilon(460.0)
+    )
