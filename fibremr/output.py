@@ -5,8 +5,11 @@ from __future__ import annotations
 import json
 import os
 import shutil
+import signal
 import tempfile
-from collections.abc import Iterable, Mapping
+import threading
+from collections.abc import Iterable, Iterator, Mapping
+from contextlib import contextmanager
 from pathlib import Path
 
 from fibremr.errors import OutputError
@@ -35,11 +38,9 @@ class Folder:
             self._made = [p for p in (parent, *parent.parents) if not p.exists()]
             parent.mkdir(parents=True, exist_ok=True)
             beside = parent if _may_write(parent) else path.resolve()
-            self._stage = Path(
-                tempfile.mkdtemp(prefix=f".{path.resolve().name}-", suffix=".fibremr", dir=beside)
-            )
-        except OSError as error:
-            reason = error.strerror or str(error)
+            self._stage = Path(tempfile.mkdtemp(prefix=".fibremr-", dir=beside))
+        except (OSError, RuntimeError) as error:  # RuntimeError: links that lead to each other
+            reason = getattr(error, "strerror", None) or str(error)
             raise OutputError(f"{path}: the output folder cannot be written: {reason}") from None
 
     def __enter__(self) -> Folder:
@@ -63,11 +64,15 @@ class Folder:
         (self._stage / name).write_text(text, encoding="utf-8", newline="\n")
 
     def commit(self) -> None:
-        """Put the new files in the place of the old ones."""
+        """Put the new files in the place of the old ones; an interrupt waits until that is done."""
+        with _uninterrupted():
+            self._commit()
+
+    def _commit(self) -> None:
         new = sorted(p.name for p in self._stage.iterdir())
         try:
             self.path.mkdir(parents=True, exist_ok=True)
-            if _own_files(self.path) != self._old:
+            if _own_files(self.path, besides=self._stage.name) != self._old:
                 raise OutputError(
                     f"{self.path}: the folder has changed while the analysis ran; nothing was written"
                 )
@@ -81,6 +86,22 @@ class Folder:
         self._made = []
 
 
+@contextmanager
+def _uninterrupted() -> Iterator[None]:
+    if threading.current_thread() is not threading.main_thread():
+        yield
+        return
+    kept = signal.getsignal(signal.SIGINT)
+    pressed = []
+    signal.signal(signal.SIGINT, lambda *_: pressed.append(True))
+    try:
+        yield
+    finally:
+        signal.signal(signal.SIGINT, kept)
+    if pressed:
+        raise KeyboardInterrupt
+
+
 def _writable(existing: Path, asked: Path) -> None:
     if not _may_write(existing):
         raise OutputError(f"{asked}: the output folder cannot be written: {existing} is read-only")
@@ -91,15 +112,15 @@ def _may_write(folder: Path) -> bool:
     return bool(folder.stat().st_mode & 0o222) and os.access(folder, os.W_OK | os.X_OK)
 
 
-def _own_files(path: Path) -> set[str]:
-    """The files of an earlier run in a folder; OutputError when it holds anything else."""
+def _own_files(path: Path, *, besides: str = "") -> set[str]:
+    """The files of an earlier run in a folder; OutputError when it holds anything else but `besides`."""
     if not path.exists():
         if path.is_symlink():
             raise OutputError(f"{path}: a link that leads nowhere; name another output folder with --out")
         return set()
     if not path.is_dir():
         raise OutputError(f"{path}: a file, and an output folder is wanted; name another with --out")
-    present = {p.name for p in path.iterdir()}
+    present = {p.name for p in path.iterdir()} - {besides}
     if not present:
         return set()
     listed: set[str] = set()
@@ -108,7 +129,7 @@ def _own_files(path: Path) -> set[str]:
             record = json.loads((path / LIST).read_text(encoding="utf-8"))
             if isinstance(record, dict) and str(record.get("schema", "")).startswith("fibremr-"):
                 listed = {str(name) for name in record.get("files", [])} | {LIST}
-        except (ValueError, OSError, TypeError):
+        except (ValueError, OSError, TypeError, RecursionError):
             listed = set()
     foreign = sorted(present - listed) + sorted(n for n in present & listed if (path / n).is_dir())
     if foreign:

@@ -7,7 +7,7 @@ for equilibrium is removed by the plane of strain that a free section would take
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from typing import ClassVar, Protocol
 
@@ -105,22 +105,30 @@ class Points:
     source: ClassVar[str] = "given in the case"
     validity: ClassVar[str] = "any section made of plates"
 
-    def over(self, section: Section) -> Mapping[str, Along]:
-        """Stress along each part that has points [MPa]."""
+    def faults(self, section: Section) -> Iterator[ValueFault]:
+        """Every point that the section has no place for."""
         plates = [p.name for p in section.parts if isinstance(p.body, Plate)]
-        table: dict[str, dict[float, float]] = {}
+        seen = set()
         for i, point in enumerate(self.points):
             if point.part not in plates:
-                raise ValueFault(
+                yield ValueFault(
                     f"{section.name} has no plate of that name",
                     key=f"point[{i}].part",
                     allowed=", ".join(plates) or "none: this section has no plates",
                     suggestion=closest(point.part, plates),
                     code="unknown-name",
                 )
-            if point.at in table.setdefault(point.part, {}):
-                raise ValueFault("this place is given twice", key=f"point[{i}].at")
-            table[point.part][point.at] = point.stress
+            elif (point.part, point.at) in seen:
+                yield ValueFault("this place is given twice", key=f"point[{i}].at")
+            seen.add((point.part, point.at))
+
+    def over(self, section: Section) -> Mapping[str, Along]:
+        """Stress along each part that has points [MPa]."""
+        for fault in self.faults(section):
+            raise fault
+        table: dict[str, dict[float, float]] = {}
+        for point in self.points:
+            table.setdefault(point.part, {})[point.at] = point.stress
         along = {}
         for part, stresses in table.items():
             places = sorted(stresses)
@@ -229,8 +237,8 @@ def balanced(
         raise ValueFault(
             f"the residual stress reaches {at_edges[worst]:.4g} MPa after balancing, more than the yield "
             f"strength of {strength[worst]:g} MPa there",
-            key="scale",
-            suggestion="lower the scale",
+            key="point" if isinstance(pattern, Points) and scale == 1.0 else "scale",
+            suggestion="lower the stresses or the scale",
         )
     lacked = max(abs(residual.force_share), abs(residual.moment_share))
     if lacked > 0.10 and not isinstance(pattern, Points):

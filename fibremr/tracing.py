@@ -222,9 +222,8 @@ def _record(
     at_mp = bar.plastic.moment / ei
     warnings = list(case.warnings)
     if first == 0.0:
-        warnings.append(
-            "the axial force with the residual stress brings the section to yield before it bends"
-        )
+        both = " with the residual stress" if residual is not None else ""
+        warnings.append(f"the axial force{both} brings the section to yield before it bends")
     if first > curve.curvature[-1]:
         first_moment = first * ei
         warnings.append("the trace ends before first yield")

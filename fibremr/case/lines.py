@@ -37,6 +37,8 @@ def line_numbers(text: str) -> dict[Path, int]:
         if statement.startswith("["):
             table = _header(statement, counts)
             found.setdefault(table, start)
+            if isinstance(table[-1], int):
+                found.setdefault(table[:-1], start)
             continue
         try:
             parsed = tomllib.loads(statement)

@@ -3,9 +3,12 @@
 from __future__ import annotations
 
 import hashlib
+import os
 import re
 import tomllib
 from collections.abc import Sequence
+from copy import deepcopy
+from itertools import pairwise
 from pathlib import Path as FilePath
 from typing import Any
 
@@ -20,7 +23,7 @@ def read_case(file: str | FilePath, *, settings: Sequence[str] = ()) -> Case:
 
     Raises CaseError with all faults of the case.
     """
-    name = str(file)
+    name = os.fsencode(file).decode("utf-8", "replace")
     try:
         data = FilePath(file).read_bytes()
     except IsADirectoryError:
@@ -45,19 +48,20 @@ def parse_case(data: bytes, *, name: str, settings: Sequence[str] = ()) -> Case:
         raise _unreadable(name, "the file is empty", "`fibremr new FILE` writes a case to start from")
     try:
         values = tomllib.loads(text)
-    except (tomllib.TOMLDecodeError, RecursionError) as error:
+    except (ValueError, RecursionError) as error:
         raise CaseError([_syntax(name, text, str(error))]) from None
     notes = Notes()
-    try:
-        for setting in settings:
-            _override(values, setting, notes)
-    except ValueFault as error:
-        notes.fault(("--set",), error)
     digest = hashlib.sha256(data)
     for setting in settings:
-        digest.update(b"\0--set " + setting.encode())
-    root = Table(notes, (), values)
-    case = read_tables(root, file=name, sha256=digest.hexdigest())
+        digest.update(b"\0--set " + setting.encode(errors="replace"))
+        try:
+            values = _overridden(values, setting, notes)
+        except ValueFault as error:
+            notes.fault(("--set", setting), error)
+    try:
+        case = read_tables(Table(notes, (), values), file=name, sha256=digest.hexdigest())
+    except RecursionError:
+        raise _unreadable(name, "tables nested too deeply to be read") from None
     if notes.faults or case is None:
         raise CaseError(_with_lines(notes, text, name))
     return case
@@ -70,9 +74,9 @@ def _unreadable(name: str, message: str, suggestion: str = "") -> CaseError:
 def _syntax(name: str, text: str, message: str) -> Fault:
     """A fault of the TOML itself, with its line and what most often is behind it."""
     match = re.search(r"\(at line (\d+), column (\d+)\)", message)
-    line = int(match[1]) if match else len(text.splitlines()) if "end of document" in message else None
+    line = int(match[1]) if match else len(text.split("\n")) if "end of document" in message else None
     reason = re.sub(r"\s*\(at .*\)", "", message)
-    found = text.splitlines()[line - 1].strip() if line and line <= len(text.splitlines()) else ""
+    found = text.split("\n")[line - 1].strip() if line and line <= len(text.split("\n")) else ""
     hint = ""
     bare = re.fullmatch(r"([\w.\-]+)\s*=\s*(-?\d[\d.,]*\s*[A-Za-z%/][\w/ ]*)\s*(#.*)?", found)
     if bare:
@@ -83,41 +87,45 @@ def _syntax(name: str, text: str, message: str) -> Fault:
     return Fault("toml", f"not valid TOML{quoted} ({reason})", file=name, line=line, suggestion=hint)
 
 
-def _override(values: dict[str, Any], setting: str, notes: Notes) -> None:
-    key, equals, text = setting.partition("=")
-    key = key.strip()
-    if not equals or not key:
+_SETTING = re.compile(r"[^\s.\[\]=]+(\[[0-9]+\])*(\.[^\s.\[\]=]+(\[[0-9]+\])*)*")
+
+
+def _overridden(values: dict[str, Any], setting: str, notes: Notes) -> dict[str, Any]:
+    """The values of a case with one of them replaced."""
+    key, equals, text = (part.strip() for part in setting.partition("="))
+    if not equals or not _SETTING.fullmatch(key):
         raise ValueFault(
             f"--set {setting!r} is not KEY=VALUE", allowed="such as --set steel.grade=S275", code="usage"
         )
     try:
-        value = tomllib.loads(f"x = {text.strip()}")["x"]
-    except tomllib.TOMLDecodeError:
-        value = text.strip()
+        parsed = tomllib.loads(f"x = {text}")
+        value = parsed["x"] if len(parsed) == 1 else text
+    except (ValueError, RecursionError):
+        value = text
     path: list[Any] = []
     for piece in key.split("."):
         name, *indices = piece.split("[")
-        if name:
-            path.append(name)
-        for index in indices:
-            if not re.fullmatch(r"\d+\]", index):
-                raise ValueFault(f"--set {setting!r}: not an index in brackets", code="usage")
-            path.append(int(index[:-1]))
-    target: Any = values
-    for step, following in zip(path, path[1:], strict=False):
+        path += [name, *(int(index[:-1]) for index in indices)]
+    changed: Any = deepcopy(values)
+    target = changed
+    fault = ValueFault(f"--set {setting!r}: the case has no {dotted(tuple(path))}", code="usage")
+    for step, following in pairwise(path):
         if isinstance(step, str) and isinstance(target, dict):
-            target = target.setdefault(step, {} if isinstance(following, str) else [])
+            if step not in target and isinstance(following, int):
+                raise fault
+            target = target.setdefault(step, {})
         elif isinstance(step, int) and isinstance(target, list) and step < len(target):
             target = target[step]
         else:
-            raise ValueFault(f"--set {setting!r}: the case has no {dotted(tuple(path))}", code="usage")
+            raise fault
     last = path[-1]
     by_name = isinstance(target, dict) and isinstance(last, str)
     by_place = isinstance(target, list) and isinstance(last, int) and last < len(target)
     if not by_name and not by_place:
-        raise ValueFault(f"--set {setting!r}: the case has no {dotted(tuple(path))}", code="usage")
+        raise fault
     target[last] = value
     notes.origins[tuple(path)] = "--set"
+    return dict(changed)
 
 
 def _with_lines(notes: Notes, text: str, name: str) -> list[Fault]:
@@ -139,8 +147,9 @@ def _with_lines(notes: Notes, text: str, name: str) -> list[Fault]:
 
     placed = []
     for path, fault in notes.faults:
-        usage = path == ("--set",)
+        usage = path[:1] == ("--set",)
         given = usage or any(path[: len(p)] == p for p in notes.origins)
+        given |= path not in lines and any(p[: len(path)] == path for p in notes.origins if path)
         file = "--set" if given else name
         key = "" if usage else fault.key
         placed.append(replace(fault, file=file, line=line_of(path), key=key))

@@ -48,6 +48,8 @@ def read_section(table: Table) -> Section | None:
         shape_name = None
     else:
         shape_name = table.choice("shape", _SHAPES, later=_LATER_SHAPES)
+        if table.data["shape"] in _LATER_SHAPES:
+            return None  # its keys are those of a later version
     if shape_name is None:
         _any_sizes(table)
         return None

@@ -54,30 +54,18 @@ def read_steels(
         special[name] = _inherited(_steel_spec(sub), base)
         sub.finish()
         table.sound &= sub.sound
-    if section is None or section_table is None:
+    if section_table is not None:
+        _check_references(section_table, inner)
+    if section is None or section_table is None or not section_table.sound:
         for spec in (base, *special.values()):
-            if (
-                base.table.sound and spec.table.sound
-            ):  # any usual thickness shows the faults that are not the section's
-                _resolve(spec, 10.0, grades.ROLLED)
+            if base.table.sound and spec.table.sound and (spec.grade or spec.strength):
+                _resolve(spec, 10.0, grades.ROLLED)  # any usual thickness shows what is not the section's
         return None
     used = {part.steel for part in section.parts}
     for name in inner:
         if name not in used:
             table.notes.warnings.append(f"[steel.{name}] is not used by any part of the section")
-    for key, value in section_table.data.items():
-        wanted = value.get("steel") if isinstance(value, dict) else None
-        if isinstance(wanted, str) and wanted not in special:
-            section_table.fail(
-                f"{key}.steel",
-                ValueFault(
-                    f"there is no table [steel.{wanted}]",
-                    allowed=", ".join(inner) or "a table [steel.NAME] of the case",
-                    suggestion=closest(wanted, inner),
-                    code="unknown-name",
-                ),
-            )
-    if not table.sound or not section_table.sound:
+    if not table.sound:
         return None
     made = _made(section)
     thickest = max(part.thickness for part in section.parts)
@@ -92,11 +80,27 @@ def read_steels(
     every = []
     for part in section.parts:
         every.append(steel(part.steel, thickest if section.one_piece else part.thickness))
-    plain = [s for part, s in zip(section.parts, every, strict=True) if not part.steel]
-    first = plain[0] if plain else steel("", thickest)
-    if first is None or any(s is None for s in every):
+    found = tuple(s for s in every if s is not None)
+    if len(found) < len(every):
         return None
-    return tuple(s for s in every if s is not None), first
+    plain = [s for part, s in zip(section.parts, found, strict=True) if not part.steel]
+    return found, (plain or found)[0]
+
+
+def _check_references(section_table: Table, names: list[str]) -> None:
+    """Every `steel = ...` of a part names a table [steel.NAME]."""
+    for key, value in section_table.data.items():
+        wanted = value.get("steel") if isinstance(value, dict) else None
+        if isinstance(wanted, str) and wanted not in names:
+            section_table.fail(
+                (key, "steel"),
+                ValueFault(
+                    f"there is no table [steel.{wanted}]",
+                    allowed=", ".join(names) or "a table [steel.NAME] of the case",
+                    suggestion=closest(wanted, names),
+                    code="unknown-name",
+                ),
+            )
 
 
 def _made(section: Section) -> str:
@@ -203,8 +207,7 @@ def _resolve(spec: _SteelSpec, thickness: float, made: str) -> Steel | None:
     fy = spec.strength if spec.strength is not None else strength.yield_stress if strength else 0.0
     fu = spec.ultimate if spec.ultimate is not None else strength.ultimate if strength else None
     modulus = spec.modulus or (strength.modulus if strength else 210e3)
-    if not _ordered(table, fy, fu):
-        return None
+    ordered = _ordered(table, fy, fu)
     law_name = spec.law or LAWS[0]
     law: Law
     try:
@@ -229,6 +232,8 @@ def _resolve(spec: _SteelSpec, thickness: float, made: str) -> Steel | None:
             law = Bilinear(modulus, fy)
     except ValueFault as error:
         table.fail(error.key, error)
+        return None
+    if not ordered:
         return None
     if spec.hardening is not None and law_name != "bilinear":
         table.notes.warnings.append(f"{where}.hardening is not used by the law {law_name}")

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 import json
-from collections.abc import Callable, Sequence
+import re
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, field
 from math import isfinite
 from typing import Any, TypeVar
@@ -20,7 +21,15 @@ def dotted(path: Path) -> str:
     """A path as it is written: beam.spans[2]."""
     text = ""
     for step in path:
-        text += f"[{step}]" if isinstance(step, int) else f".{step}" if text else str(step)
+        if isinstance(step, int):
+            text += f"[{step}]"
+        else:
+            name = (
+                step
+                if re.fullmatch(r"[A-Za-z0-9_()\-. ]*[A-Za-z0-9_()\-]", step) and "." not in step
+                else shown(step)
+            )
+            text += f".{name}" if text else name
     return text
 
 
@@ -78,17 +87,18 @@ class Table:
         self.later: list[str] = []
         self.sound = True
 
-    def fail(self, key: str, error: ValueFault) -> None:
-        """Keep a fault of a key (dotted and indexed below this table, as `flange.thickness`)."""
+    def fail(self, key: str | Path, error: ValueFault) -> None:
+        """Keep a fault of a key: a path below this table, or a text such as `flange.thickness`."""
         self.sound = False
         path, value = self.path, self.data
-        for step in _steps(key):
+        steps = _steps(key) if isinstance(key, str) else key
+        for step in steps:
             path = (*path, step)
             try:
                 value = value[step]  # type: ignore[index]
             except (KeyError, IndexError, TypeError):
                 value = None  # type: ignore[assignment]
-        found = shown(value) if value is not None and key else ""
+        found = shown(value) if value is not None and steps else ""
         self.notes.fault(path, error, found if len(found) <= 60 else found[:56] + " ...")
 
     def has(self, key: str) -> bool:
@@ -140,11 +150,14 @@ class Table:
 
         def read(value: Any) -> float:
             found = quantity(value, kind)
+            low, high, said = least, most, text
+            if kind == "length" and least is None and most is None:
+                low, high, said = (0.0 if zero else 0.1), 20e3, "0.1 mm to 20 m"
             if not signed and (found < 0.0 or (found == 0.0 and not zero)):
                 allowed = "zero or more" if zero else "more than zero"
                 raise ValueFault(f"not a possible {kind}", allowed=allowed, code="range")
-            if (least is not None and found < least) or (most is not None and found > most):
-                raise ValueFault(f"not a possible {kind} here", allowed=text, code="range")
+            if (low is not None and found < low) or (high is not None and found > high):
+                raise ValueFault(f"not a possible {kind} here", allowed=said, code="range")
             return found
 
         return self._value(key, read, default, text, required, f'a {kind}, such as "{_EXAMPLE[kind]}"')
@@ -157,7 +170,7 @@ class Table:
         def read(value: Any) -> float:
             if isinstance(value, bool) or not isinstance(value, int | float):
                 raise ValueFault("not a number", allowed="a bare number, without unit or quotes", code="type")
-            if not isfinite(value):
+            if isinstance(value, float) and not isfinite(value):
                 raise ValueFault("not a finite number", allowed="a finite number", code="not-finite")
             if value > most or value < least or (above and value == least):
                 low = "above" if above else "from"
@@ -172,6 +185,8 @@ class Table:
         def read(value: Any) -> str:
             if not isinstance(value, str) or not value.strip():
                 raise ValueFault("not a text", allowed="a text in quotes that is not empty", code="type")
+            if any(ord(c) < 32 or 127 <= ord(c) < 160 or 0xD800 <= ord(c) < 0xE000 for c in value):
+                raise ValueFault("a control character in a text", allowed="printed characters", code="type")
             return value
 
         return self._value(key, read, default, shown(default), required, "a text")
@@ -194,16 +209,18 @@ class Table:
         default: str | None = None,
         required: bool = False,
         later: Sequence[str] = (),
+        also: Mapping[str, str] | None = None,
     ) -> str | None:
         """One of some words, in any case and with or without hyphens and blanks.
 
-        `later` are words of the interface that this version does not serve yet.
+        `later` are words of the interface that this version does not serve yet, `also` other spellings.
         """
 
         def read(value: Any) -> str:
             if not isinstance(value, str):
                 raise ValueFault("not a word", allowed=", ".join(allowed), code="type")
             plain = {_plain(word): word for word in allowed}
+            plain |= {_plain(spelled): word for spelled, word in (also or {}).items()}
             if _plain(value) in plain:
                 return plain[_plain(value)]
             if _plain(value) in {_plain(word) for word in later}:
@@ -271,7 +288,7 @@ class Table:
             if key not in self.known and key not in self.later:
                 where = owner or (f"[{dotted(self.path)}]" if self.path else "a case")
                 self.fail(
-                    key,
+                    (key,),
                     ValueFault(
                         f"not a key of {where}",
                         allowed=", ".join(dict.fromkeys(self.known)),

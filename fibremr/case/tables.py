@@ -6,14 +6,15 @@ from dataclasses import replace
 from pathlib import PurePath
 
 from fibremr.bending import Bar
-from fibremr.case.records import Bending, Case, Limits
+from fibremr.case.records import Bending, Case, Limits, Steel
 from fibremr.case.section_table import read_section
 from fibremr.case.steel_table import read_steels
 from fibremr.case.table import Table
-from fibremr.case.units import SYSTEMS, quantity
+from fibremr.case.units import SYSTEMS, quantity, temperature
 from fibremr.errors import ValueFault, closest
 from fibremr.residual import EccsRolled, Pattern, Points, PointStress
 from fibremr.rotation import Setup
+from fibremr.section.parts import Section
 from fibremr.section.properties import squash
 
 LATER_PATTERNS = (
@@ -41,7 +42,7 @@ def read_tables(root: Table, *, file: str, sha256: str) -> Case | None:
     limits = _limits(limits_table)
     steels = read_steels(steel_table, section_table, section) if steel_table else None
     bending_table = root.table("bending") or Table(notes, ("bending",), {})
-    bending = _bending(bending_table)
+    bending, axial = _bending(bending_table)
     trace_table = root.table("trace") or Table(notes, ("trace",), {})
     to = _trace(trace_table)
     rotation_table = root.table("rotation")
@@ -49,6 +50,10 @@ def read_tables(root: Table, *, file: str, sha256: str) -> Case | None:
     residual_table = root.table("residual")
     pattern, scale = _residual(residual_table) if residual_table else (None, 1.0)
     root.finish()
+    if section is not None and steels is not None:
+        _check_axial(section, steels[0], axial, bending_table)
+    if section is not None and pattern is not None and residual_table is not None:
+        _check_pattern(pattern, section, residual_table)
     if section is None or steels is None or bending is None or limits is None:
         return None
     per_part, base = steels
@@ -69,6 +74,8 @@ def read_tables(root: Table, *, file: str, sha256: str) -> Case | None:
         entries=(),
         warnings=(),
     )
+    if notes.faults:
+        return None
     _together(case, bending_table, residual_table)
     if notes.faults:
         return None
@@ -86,22 +93,32 @@ def bar_of(case: Case) -> Bar:
     return Bar(case.section.turned(turn), laws, case.bending.axial, case.bending.sense)
 
 
-def _together(case: Case, bending: Table, residual: Table | None) -> None:
-    """What only shows when the tables are seen together."""
-    yields = [steel.law.yield_stress for steel in case.steels]
-    load = squash(case.section, yields)
-    axial = case.bending.axial
+def _check_axial(section: Section, steels: tuple[Steel, ...], axial: float, table: Table) -> None:
+    load = squash(section, [steel.law.yield_stress for steel in steels])
     if abs(axial) >= load:
-        key = "compression" if axial < 0.0 else "tension"
-        bending.fail(
-            key,
+        table.fail(
+            "compression" if axial < 0.0 else "tension",
             ValueFault(
                 "the axial force reaches the squash load of the section",
-                allowed=f"below {load / 1e3:.4g} kN",
+                allowed=f"below {load / 1e3:.7g} kN",
                 code="range",
             ),
         )
+
+
+def _check_pattern(pattern: Pattern, section: Section, table: Table) -> None:
+    if isinstance(pattern, Points):
+        for error in pattern.faults(section):
+            table.fail(error.key, error)
         return
+    try:
+        pattern.over(section)
+    except ValueFault as error:
+        table.fail(error.key, error)
+
+
+def _together(case: Case, bending: Table, residual: Table | None) -> None:
+    """What only shows when the tables, each without a fault, are seen together."""
     bar = bar_of(case)
     geometry = bar.geometry
     lopsided = abs(geometry.product) > 1e-6 * geometry.second_moment
@@ -173,7 +190,8 @@ def _residual(table: Table) -> tuple[Pattern | None, float | None]:
     return (EccsRolled() if name == EccsRolled.name else None), scale
 
 
-def _bending(table: Table) -> Bending | None:
+def _bending(table: Table) -> tuple[Bending | None, float]:
+    """How the section is bent, or None after a fault; and the axial force as far as it can be read."""
     about = "major"
     if table.has("about"):
         value = table.data["about"]
@@ -201,17 +219,18 @@ def _bending(table: Table) -> Bending | None:
     if table.has("compression") and table.has("tension"):
         table.fail("tension", ValueFault("compression and tension exclude each other"))
     table.refuse_later(("shear",))
-    if table.has("temperature") and str(table.data["temperature"]).replace(" ", "") not in ("20degC", "20°C"):
-        table.fail(
-            "temperature",
-            ValueFault("not available in this version", allowed='"20 degC"', code="not-available"),
-        )
+    if table.has("temperature"):
+        try:
+            if abs(temperature(table.data["temperature"]) - 20.0) > 0.5:
+                raise ValueFault("not available in this version", allowed='"20 degC"', code="not-available")
+        except ValueFault as error:
+            table.fail("temperature", error)
     table.choice("sideways", ("held", "free"), default="held")
     table.finish()
-    if sense is None:
-        return None
     axial = (tension or 0.0) - (compression or 0.0)
-    return Bending(about, 1 if sense == "sagging" else -1, axial)
+    if sense is None:
+        return None, axial
+    return Bending(about, 1 if sense == "sagging" else -1, axial), axial
 
 
 def _trace(table: Table) -> float | None:
@@ -229,7 +248,7 @@ def _trace(table: Table) -> float | None:
 
 def _rotation(table: Table) -> Setup | None:
     kind = table.choice("setup", SETUPS, required=True)
-    span = table.quantity("span", "length", required=True)
+    span = table.quantity("span", "length", required=True, least=10.0, most=1e6, text="10 mm to 1 km")
     shear_span = None
     if kind == "four-point" or (kind is None and table.has("shear_span")):
         shear_span = table.quantity("shear_span", "length", required=kind == "four-point")
@@ -252,14 +271,20 @@ def _rotation(table: Table) -> Setup | None:
 
 
 def _limits(table: Table) -> Limits | None:
-    code = table.choice("code", CODES, default=CODES[0], later=LATER_CODES)
+    code = table.choice(
+        "code",
+        CODES,
+        default=CODES[0],
+        later=LATER_CODES,
+        also={"EN 1993-1-1": CODES[0], "EN 1993": CODES[0]},
+    )
     strain = capacity = None
     if table.has("strain"):
         strain = table.quantity("strain", "strain", most=0.5, least=0.0, text="up to 50 %")
     if table.has("rotation_capacity"):
         capacity = table.number("rotation_capacity", least=0.0, above=True, most=100.0)
     source = table.text("rotation_source") if table.has("rotation_source") else None
-    if capacity is not None and source is None:
+    if capacity is not None and "rotation_source" not in table.data:
         table.fail(
             "rotation_source",
             ValueFault(

@@ -58,8 +58,8 @@ KINDS = {
     )
 }
 
-_NUMBER = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?")
-_COMMA = re.compile(r"([+-]?\d+),(\d+)(?:[eE][+-]?\d+)?(\s*)(.*)")
+_NUMBER = re.compile(r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?")
+_COMMA = re.compile(r"([+-]?[0-9.]*,[0-9.,]*)((?:[eE][+-]?[0-9]+)?)(\s*)(.*)")
 _ALIASES = {"²": "2", "·": " ", "⋅": " ", "°C": "degC", "°F": "degF", "°": "deg", "−": "-"}
 
 
@@ -70,6 +70,8 @@ def quantity(text: object, kind: str) -> float:
     """
     of = KINDS[kind]
     if isinstance(text, bool) or not isinstance(text, str):
+        if isinstance(text, float) and not isfinite(text):
+            raise ValueFault("not a finite number", allowed=f"a finite {kind}", code="not-finite")
         if isinstance(text, int | float) and not isinstance(text, bool):
             a, b = of.examples
             raise ValueFault(
@@ -85,10 +87,7 @@ def quantity(text: object, kind: str) -> float:
         plain = plain.replace(written, meant)
     comma = _COMMA.fullmatch(plain)
     if comma:
-        whole, part, gap, unit = comma.groups()
-        raise ValueFault(
-            "a decimal comma", suggestion=f'write "{whole}.{part}{gap}{unit}"', code="decimal-comma"
-        )
+        raise _comma(*comma.groups())
     number = _NUMBER.match(plain)
     if not number:
         first = plain.split()[0].lower().lstrip("+-") if plain.split() else ""
@@ -115,6 +114,40 @@ def quantity(text: object, kind: str) -> float:
     if not isfinite(result):
         raise ValueFault("not a finite number", allowed=f"a finite {kind}", code="not-finite")
     return result
+
+
+def _comma(digits: str, power: str, gap: str, unit: str) -> ValueFault:
+    """A fault for a number with commas: a decimal comma, or one between thousands."""
+    end = f"{power}{gap}{unit}"
+    without = digits.replace(",", "").replace(".", "")
+    if re.fullmatch(r"[+-]?[0-9]{1,3}(,[0-9]{3})+\.[0-9]+", digits):
+        hint = f'write "{digits.replace(",", "")}{end}"'
+    elif re.fullmatch(r"[+-]?[0-9]{1,3}(\.[0-9]{3})+,[0-9]+", digits):
+        hint = f'write "{digits.replace(".", "").replace(",", ".")}{end}"'
+    elif re.fullmatch(r"[+-]?[0-9]{1,3}(,[0-9]{3}){2,}", digits):
+        hint = f'write "{without}{end}"'
+    elif re.fullmatch(r"[+-]?[0-9]{1,3},[0-9]{3}", digits) and not digits.lstrip("+-").startswith("0,"):
+        hint = f'write "{digits.replace(",", ".")}{end}" or "{without}{end}", whichever is meant'
+    elif re.fullmatch(r"[+-]?[0-9]*,[0-9]+", digits):
+        hint = f'write "{digits.replace(",", ".")}{end}"'
+    else:
+        hint = "write digits with one decimal point"
+    return ValueFault("a decimal comma", suggestion=hint, code="decimal-comma")
+
+
+def temperature(text: object) -> float:
+    """A temperature in degrees Celsius from a text such as "20 degC", "293.15 K" or "68 degF"."""
+    plain = text.strip() if isinstance(text, str) else ""
+    for written, meant in _ALIASES.items():
+        plain = plain.replace(written, meant)
+    number = _NUMBER.match(plain)
+    unit = plain[number.end() :].strip() if number else ""
+    if not number or unit not in ("degC", "K", "degF"):
+        raise ValueFault(
+            "not a temperature", allowed="degC, K, degF", suggestion='such as "20 degC"', code="type"
+        )
+    value = float(number.group())
+    return {"degC": value, "K": value - 273.15, "degF": (value - 32.0) / 1.8}[unit]
 
 
 def _unknown_unit(unit: str, of: Kind) -> ValueFault:

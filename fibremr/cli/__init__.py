@@ -3,13 +3,19 @@
 from __future__ import annotations
 
 import os
+import signal
 import sys
+from collections.abc import Sequence
+from contextlib import suppress
 from importlib import import_module
-from typing import Any
+from typing import TYPE_CHECKING
 
 import click
 
 from fibremr import __version__
+
+if TYPE_CHECKING:
+    from fibremr.errors import Fault
 
 # name -> module and one line for the list of commands, kept here so that the list imports nothing
 COMMANDS = {
@@ -70,31 +76,28 @@ def root(ctx: click.Context) -> None:
 
 def main() -> None:
     """Run the command line and leave with its exit status."""
-    sys.exit(run(sys.argv[1:]))
+    signal.signal(signal.SIGTERM, lambda *_: sys.exit(143))  # so that what was begun is cleared away
+    status = run(sys.argv[1:])
+    try:
+        if sys.stdout is not None:
+            sys.stdout.flush()
+    except OSError:
+        os.dup2(os.open(os.devnull, os.O_WRONLY), 1)  # nothing more can be said
+    sys.exit(status)
 
 
 def run(arguments: list[str]) -> int:
     """Run with arguments; return the exit status. The one place where errors become text."""
     from fibremr.errors import Fault, FibremrError
 
-    as_json = "--json" in arguments
-
-    def report(faults: Any, status: int) -> int:
-        if as_json:
-            import json
-
-            click.echo(json.dumps({"errors": [f.record() for f in faults]}, ensure_ascii=False, indent=2))
-        else:
-            for fault in faults:
-                click.echo(str(fault), err=True)
-        return status
-
+    faults: Sequence[Fault]
     try:
         status = root.main(arguments, prog_name="fibremr", standalone_mode=False)
-        sys.stdout.flush()
+        if sys.stdout is not None:
+            sys.stdout.flush()
         return status if isinstance(status, int) else 0
     except FibremrError as error:
-        return report(error.faults(), error.exit_status)
+        faults, status = error.faults(), error.exit_status
     except click.exceptions.Exit as error:
         return error.exit_code
     except click.exceptions.NoArgsIsHelpError as error:
@@ -102,16 +105,31 @@ def run(arguments: list[str]) -> int:
         return 0
     except click.UsageError as error:
         hint = f"`{error.ctx.command_path} --help` shows what there is" if error.ctx else ""
-        return report([Fault("usage", error.format_message().rstrip("."), suggestion=hint)], 2)
+        faults, status = [Fault("usage", error.format_message().rstrip("."), suggestion=hint)], 2
     except click.ClickException as error:
-        return report([Fault("usage", error.format_message())], 2)
+        faults, status = [Fault("usage", error.format_message())], 2
     except (KeyboardInterrupt, click.Abort):
         click.echo("interrupted; nothing incomplete was kept", err=True)
         return 130
     except BrokenPipeError:
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())  # nothing more can be said
-        return 0
+        return 0  # the reader of a pipe has left
+    except OSError as error:
+        faults, status = [Fault("output", f"cannot be written: {error.strerror or error}")], 2
     except SystemExit as error:
         # when the reader of a pipe has left, click wraps the streams and ends with 1: no error here
         left = type(sys.stdout).__name__.endswith("PacifyFlushWrapper")
         return 0 if left else error.code if isinstance(error.code, int) else 0
+    with suppress(OSError):
+        _report(faults, as_json="--json" in arguments)
+    return status
+
+
+def _report(faults: Sequence[Fault], *, as_json: bool) -> None:
+    if as_json:
+        import json
+
+        record = {"errors": [fault.record() for fault in faults]}
+        click.echo(json.dumps(record, ensure_ascii=False, indent=2))
+    else:
+        for fault in faults:
+            click.echo(str(fault), err=True)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import shlex
 from pathlib import Path
 
 import click
@@ -20,6 +21,8 @@ def new(file: Path, purpose: str) -> None:
     from fibremr.errors import OutputError
     from fibremr.tables import folder
 
+    if str(file) == "-":
+        raise OutputError("-: name a file to write the case to")
     text = (folder("cases") / STARTERS[purpose]).read_text(encoding="utf-8")
     try:
         with file.open("x", encoding="utf-8", newline="\n") as target:
@@ -28,4 +31,5 @@ def new(file: Path, purpose: str) -> None:
         raise OutputError(f"{file}: there already, and left as it is; name another file") from None
     except OSError as error:
         raise OutputError(f"{file}: cannot be written: {error.strerror}") from None
-    click.echo(f"{file} written; next: fibremr {purpose} {file}")
+    name = str(file) if not str(file).startswith("-") else f"./{file}"
+    click.echo(f"{file} written; next: fibremr {purpose} {shlex.quote(name)}")

@@ -58,8 +58,11 @@ def analysis_options(function: F) -> F:
 def load(case: str, settings: tuple[str, ...]) -> Case:
     """The case of a file, or of standard input for `-`."""
     from fibremr.case.reader import parse_case, read_case
+    from fibremr.errors import CaseError, Fault
 
     if case == "-":
+        if sys.stdin is None:
+            raise CaseError([Fault("file", "standard input is closed", file="-")])
         return parse_case(sys.stdin.buffer.read(), name="-", settings=settings)
     return read_case(case, settings=settings)
 
@@ -68,4 +71,5 @@ def output_folder(case: str, out: Path | None) -> Path:
     """Where results go when nothing else is said."""
     if out is not None:
         return out
-    return Path("out") / ("stdin" if case == "-" else Path(case).stem)
+    stem = Path(case).stem.strip(".")
+    return Path("out") / ("stdin" if case == "-" else stem or "case")

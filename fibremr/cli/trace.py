@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import os
 from pathlib import Path
 
 import click
@@ -43,6 +44,7 @@ def trace(
             for name, columns in result.tables.items():
                 folder.write(f"{name}.csv", output.csv_text(columns))
             if not no_figures:
+                os.environ["MPLBACKEND"] = "agg"  # whatever the user's shell says: there is no window here
                 from fibremr import figures
 
                 figures.write_all(result, folder.stage)

@@ -5,6 +5,7 @@ They speak by line style, hatching and words; `Figure` and its canvas only, neve
 
 from __future__ import annotations
 
+import warnings
 from collections.abc import Callable
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -52,7 +53,8 @@ def write_all(result: TraceResult, folder: Path) -> None:
 
 def save(figure: Figure, file: Path) -> None:
     """Write a picture as SVG or PNG, by the ending of the file; the bytes repeat from run to run."""
-    with mpl.rc_context(STYLE):  # type: ignore[arg-type]
+    with mpl.rc_context(STYLE), warnings.catch_warnings():  # type: ignore[arg-type]
+        warnings.filterwarnings("ignore", message="Glyph .* missing")  # a title may be in any script
         if file.suffix == ".svg":
             figure.savefig(file, metadata={"Date": None, "Creator": "fibremr"})
         else:

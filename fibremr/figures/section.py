@@ -136,7 +136,7 @@ def _residual_diagrams(axes: Axes, result: TraceResult, reach: float, scale: flo
     """Stress along each plate as a curve beside it; returns the extremes [MPa]."""
     case, bar, residual = result.case, result.bar, result.curve.residual
     assert residual is not None
-    peak = max(abs(residual.peak_compression), residual.peak_tension)
+    peak = max(abs(residual.peak_compression), residual.peak_tension) or 1.0
     for part, turned in zip(case.section.parts, bar.section.parts, strict=True):
         body = part.body
         if not isinstance(body, Plate) or not isinstance(turned.body, Plate):

@@ -31,6 +31,7 @@ STYLE: dict[str, Any] = {
     "hatch.linewidth": 0.5,
     "legend.frameon": False,
     "svg.hashsalt": "fibremr",
+    "text.parse_math": False,  # a dollar sign in a title is a dollar sign
     "svg.fonttype": "path",
     "figure.dpi": 100,
 }

@@ -226,7 +226,7 @@ def _depth_faults(clear: float, radius: float, key: str, *, both: bool) -> Itera
         yield ValueFault(
             "the flanges overlap or leave no web" if both else "the flange leaves no web",
             key=key,
-            allowed="flange thicknesses that together stay below the height",
+            allowed="flanges that together stay thinner than the height" if both else "less than the height",
         )
     elif radius * (2.0 if both else 1.0) > clear:
         yield ValueFault(

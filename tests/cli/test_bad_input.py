@@ -99,7 +99,7 @@ def flange(thickness: str, more: str) -> str:
         ("height", 'height = "nan mm"', "section.height", "not-finite"),
         ("height", 'height = "inf mm"', "section.height", "not-finite"),
         ("height", "height = 300", "section.height", "unit-missing"),
-        ("height", "height = nan", "section.height", "unit-missing"),
+        ("height", "height = nan", "section.height", "not-finite"),
         ("height", "height = true", "section.height", "type"),
         ("height", 'height = ["300 mm"]', "section.height", "type"),
         ("height", 'height = "300,5 mm"', "section.height", "decimal-comma"),
@@ -363,3 +363,227 @@ def test_a_failed_run_leaves_the_old_results(capsys: pytest.CaptureFixture[str],
     assert process(cwd=tmp_path, code=code).status == 130
     assert {p.name: p.read_bytes() for p in Path("o").iterdir()} == before
     assert sorted(p.name for p in Path().iterdir()) == ["case.toml", "o"]
+
+
+# --- found by breaking it ---------------------------------------------------------------------------
+
+HEAD = '[section]\nprofile = "IPE 450"\n[steel]\ngrade = "S355"\n'
+
+
+@pytest.mark.parametrize(
+    ("text", "keys"),
+    [
+        # faults of one table do not hide those of another, nor of the same one
+        ('[section]\nprofile = "UPE 2000"\n[steel]\ngrade = "S999"\n', {"section.profile", "steel.grade"}),
+        (HEAD.replace("S355", "S999") + 'yield = "-3 MPa"\n', {"steel.yield", "steel.grade"}),
+        (
+            '[section]\nshape = "I"\nheight = "300"\nweb = "8 mm"\n'
+            'flange = { width = "90 mm", thickness = "9 mm", steel = "no" }\n[steel]\ngrade = "S355"\n',
+            {"section.height", "section.flange.steel"},
+        ),
+        (
+            '[section]\nprofile = "IPE 450"\n[steel]\nyield = "355 MPa"\nultimate = "300 MPa"\n'
+            'law = "bilinear"\nhardening = "250 GPa"\n',
+            {"steel.ultimate", "steel.hardening"},
+        ),
+        (
+            '[section]\nprofile = "UPE 200"\n[steel]\ngrade = "S999"\n[residual]\npattern = "ECCS rolled"\n',
+            {"steel.grade", "residual.pattern"},
+        ),
+        (
+            '[section]\nprofile = "UPE 200"\n[steel]\ngrade = "S355"\n[residual]\npattern = "ECCS rolled"\n'
+            '[bending]\ncompression = "9 MN"\nsense = "x"\n',
+            {"bending.sense", "bending.compression", "residual.pattern"},
+        ),
+        (
+            HEAD + '[residual]\npattern = "points"\npoint = [ { part = "a", at = 0, stress = "1 MPa" },\n'
+            '  { part = "b", at = 0, stress = "1 MPa" } ]\n',
+            {"residual.point[0].part", "residual.point[1].part"},
+        ),
+        (HEAD + '[limits]\nrotation_capacity = 3.0\nrotation_source = ""\n', {"limits.rotation_source"}),
+    ],
+)  # fmt: skip
+def test_no_fault_hides_another(text: str, keys: set[str], capsys: pytest.CaptureFixture[str]) -> None:
+    assert {f["key"] for f in faults(capsys, text)} == keys
+
+
+@pytest.mark.parametrize(
+    ("text", "key", "line"),
+    [
+        ('"a[x]" = 1\n' + HEAD, '"a[x]"', 1),
+        (HEAD + '"a.b" = 1\n', 'steel."a.b"', 5),
+        (HEAD + '"" = 1\n', 'steel.""', 5),
+        (HEAD + "[[trace]]\nto = 5\n", "trace", 5),
+        (HEAD + '# \u2028 in a remark\nlaw = "x"\n', "steel.law", 6),
+        (HEAD + "[trace]\nto = " + "9" * 400 + "\n", "trace.to", 6),
+        (HEAD + '[residual]\npattern = "points"\npoint = [{ part = "web", at = 0, stress = "9 GPa" }]\n',
+         "residual.point", 7),
+        (HEAD.replace('profile = "IPE 450"', 'shape = "rectangle"\nwidth = "1e-9 mm"\nheight = "9 mm"'),
+         "section.width", 3),
+        (HEAD.replace('profile = "IPE 450"', 'shape = "tube"\ndiameter = "1e300 m"\nthickness = "9 mm"'),
+         "section.diameter", 3),
+        (HEAD + '[rotation]\nsetup = "cantilever"\nspan = "1e300 m"\n', "rotation.span", 7),
+        ('title = "\\u001b[31m"\n' + HEAD, "title", 1),
+    ],
+)  # fmt: skip
+def test_odd_keys_and_absurd_sizes(
+    text: str, key: str, line: int, capsys: pytest.CaptureFixture[str]
+) -> None:
+    found = [f for f in faults(capsys, text) if f["key"] == key]
+    assert found
+    assert found[0]["line"] == line
+
+
+@pytest.mark.parametrize(
+    ("value", "hint"),
+    [
+        ("1,234.5 mm", 'write "1234.5 mm"'),
+        ("6,000 mm", 'write "6.000 mm" or "6000 mm"'),
+        ("1.234,5 mm", 'write "1234.5 mm"'),
+        ("1,234,567 mm", 'write "1234567 mm"'),
+        ("0,450 m", 'write "0.450 m"'),
+    ],
+)
+def test_commas(value: str, hint: str, capsys: pytest.CaptureFixture[str]) -> None:
+    found = faults(capsys, changed("height", f'height = "{value}"')[0])
+    assert hint in str(found[0]["suggestion"])
+
+
+@pytest.mark.parametrize(
+    "settings", [["..=1"], ["x=" + "[" * 5000], ["steel..grade=S355"], ["a[0]=1"], ["bogus", "steel"]]
+)
+def test_settings_that_are_none(settings: list[str], capsys: pytest.CaptureFixture[str]) -> None:
+    Path("case.toml").write_text(HEAD)
+    ran = run(capsys, "trace", "case.toml", *(x for s in settings for x in ("--set", s)))
+    assert ran.status == 2
+    assert "Traceback" not in ran.err
+    assert len(ran.err.splitlines()) == len(settings)
+
+
+def test_deeply_nested(capsys: pytest.CaptureFixture[str]) -> None:
+    assert faults(capsys, "a" + ".a" * 3000 + " = 1\n" + HEAD)
+
+
+@pytest.mark.parametrize("degrees", ["20 degC", "20.0 degC", "293.15 K", "68 degF", "20 °C"])
+def test_room_temperature_in_every_unit(degrees: str, capsys: pytest.CaptureFixture[str]) -> None:
+    Path("case.toml").write_text(HEAD + f'[bending]\ntemperature = "{degrees}"\n')
+    assert run(capsys, "read", "case.toml").status == 0
+
+
+@pytest.mark.parametrize("code", ["EN 1993-1-1", "en1993-1-1:2005", "EN 1993-1-1:2005"])
+def test_spellings_of_the_code(code: str, capsys: pytest.CaptureFixture[str]) -> None:
+    Path("case.toml").write_text(HEAD + f'[limits]\ncode = "{code}"\n')
+    assert run(capsys, "read", "case.toml").status == 0
+
+
+@pytest.mark.parametrize("share", [0.2, 0.5, 0.62, 0.9, 0.99999])
+@pytest.mark.parametrize("kind", ["tension", "compression"])
+@pytest.mark.parametrize("profile", ["IPE 450", "RHS 200x100x8", "T IPE 300 half"])
+def test_any_axial_force_gives_a_record(
+    profile: str, kind: str, share: float, capsys: pytest.CaptureFixture[str]
+) -> None:
+    from fibremr.section.catalogue import find
+    from fibremr.section.properties import geometry
+
+    load = share * 355.0 * geometry(find(profile).section()).area / 1e3
+    Path("case.toml").write_text(
+        HEAD.replace("IPE 450", profile)
+        + f'[bending]\n{kind} = "{load!r} kN"\n[rotation]\nsetup = "cantilever"\nspan = "2 m"\n'
+    )
+    ran = run(capsys, "trace", "case.toml", "--json")
+    assert ran.status == 0, ran.err + ran.out
+    assert "Infinity" not in ran.out
+    assert "NaN" not in ran.out
+
+
+@pytest.mark.parametrize("title", ["$\\\\frac{$", "C:$\\\\dir$", "R$100, R$ 50 less", "桟橋 ☃"])
+def test_titles_are_text_and_not_mathematics(title: str, capsys: pytest.CaptureFixture[str]) -> None:
+    Path("case.toml").write_text(f'title = "{title}"\n' + HEAD, encoding="utf-8")
+    ran = run(capsys, "trace", "case.toml", "--quiet")
+    assert (ran.status, ran.err) == (0, "")
+
+
+def test_no_residual_stress_after_all(capsys: pytest.CaptureFixture[str]) -> None:
+    Path("case.toml").write_text(HEAD + '[residual]\npattern = "ECCS rolled"\nscale = 0\n')
+    ran = run(capsys, "trace", "case.toml", "--quiet")
+    assert (ran.status, ran.err) == (0, "")
+
+
+def test_part_steels_may_cover_every_part(capsys: pytest.CaptureFixture[str]) -> None:
+    Path("case.toml").write_text(
+        '[section]\nshape = "box"\nheight = "200 mm"\nwidth = "100 mm"\n'
+        'web = { thickness = "8 mm", steel = "a" }\nflange = { thickness = "9 mm", steel = "a" }\n'
+        '[steel.a]\ngrade = "S275"\n'
+    )
+    ran = run(capsys, "trace", "case.toml", "--json")
+    assert ran.status == 0, ran.out
+    assert json.loads(ran.out)["steel"]["yield_MPa"] == 275.0
+
+
+def test_a_folder_under_a_read_only_one(capsys: pytest.CaptureFixture[str]) -> None:
+    Path("p/q").mkdir(parents=True)
+    Path("p").chmod(0o555)
+    try:
+        assert traced(capsys, "--out", "p/q", "--no-figures") == 0
+        assert names("p/q") == {"results.json", "moment-curvature.csv", "moment-rotation.csv"}
+        assert traced(capsys, "--out", "p/q", "--no-figures") == 0
+    finally:
+        Path("p").chmod(0o755)
+
+
+def test_links_that_lead_to_each_other(capsys: pytest.CaptureFixture[str]) -> None:
+    Path("a").symlink_to("b")
+    Path("b").symlink_to("a")
+    for out in ("a", "a/x"):
+        assert traced(capsys, "--out", out) == 2
+
+
+def test_streams_that_are_closed_or_full(tmp_path: Path) -> None:
+    import subprocess
+    import sys
+
+    Path("case.toml").write_text(HEAD)
+    environment = {**os.environ, "PYTHONPATH": str(Path(__file__).resolve().parents[2])}
+    python = f"{sys.executable} -m fibremr"
+    for command, status in (
+        (f"{python} trace - <&-", 2),
+        (f"{python} read case.toml >&-", 0),
+        (f"{python} profiles >/dev/full", 2),
+        (f"{python} --help >/dev/full", 2),
+        (f"{python} read case.toml | true", 0),
+        (f"{python} trace nofile --json | true", 2),
+        (f"{python} methods | true", 0),
+    ):
+        done = subprocess.run(
+            ["bash", "-c", f"set -o pipefail; {command}"], cwd=tmp_path, env=environment, capture_output=True
+        )
+        assert done.returncode == status, (command, done.stderr)
+        assert b"Traceback" not in done.stderr, command
+        assert b"Exception ignored" not in done.stderr, command
+
+
+def test_names_that_are_no_text(tmp_path: Path) -> None:
+    import subprocess
+    import sys
+
+    environment = {**os.environ, "PYTHONPATH": str(Path(__file__).resolve().parents[2])}
+    name = b"\xff.toml"
+    (tmp_path / os.fsdecode(name)).write_text(HEAD)
+    done = subprocess.run(
+        [sys.executable, "-m", "fibremr", "trace", "--no-figures", os.fsdecode(name)],
+        cwd=tmp_path, env=environment, capture_output=True,
+    )  # fmt: skip
+    assert done.returncode == 0, done.stderr
+
+
+def test_terminated_runs_leave_nothing(tmp_path: Path) -> None:
+    code = (
+        "import os, signal, fibremr.tracing\nimport sys\nfrom fibremr.cli import main\n"
+        "def stop(*a, **k):\n    os.kill(os.getpid(), signal.SIGTERM)\n"
+        "fibremr.tracing.trace_curve = stop\n"
+        "sys.argv = ['fibremr', 'trace', 'case.toml', '--out', 'o']\nmain()\n"
+    )
+    Path("case.toml").write_text(HEAD)
+    ran = process(cwd=tmp_path, code=code)
+    assert ran.status == 143
+    assert [p.name for p in Path().iterdir()] == ["case.toml"]
