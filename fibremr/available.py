@@ -194,10 +194,9 @@ def carried(limit: Limit, curve: Curve, turn: Turning | None) -> Limit:
             limit, warning="no [rotation] in the case, so that this R cannot be carried to a rotation"
         )
     most = float(turn.rotation[-1]) / turn.theta_p - 1.0
-    why = "the law ends" if curve.ended_by_law else "the trace ends"
-    warning = (
-        f"the curve itself turns only to R = {most:.3g}, where {why}: moment and curvature are not given"
-    )
+    where = f"{1e3 * float(curve.curvature[-1]):.3g} 1/m"
+    why = f"where the law ends, at {where}" if curve.ended_by_law else f"and was followed to {where}"
+    warning = f"the curve comes to R = {most:.3g} {why}: moment and curvature are not given"
     return replace(
         limit,
         rotation=(limit.rotation_capacity + 1.0) * turn.theta_p,

@@ -101,6 +101,7 @@ class Bar:
             self.section,
             modulus=self.plastic_alone.modulus,
             target=TARGET,
+            focus=self.plastic.axis,
             breaks={n: a.at for n, a in pattern.over(self.section).items()},
         )
         return balanced(
@@ -152,6 +153,7 @@ def fibres(bar: Bar, residual: Residual | None, target: float, across: int) -> k
         bar.section,
         modulus=bar.plastic_alone.modulus,
         target=target,
+        focus=bar.plastic.axis,
         breaks=residual.breaks(bar.section) if residual else None,
         across=across,
     )

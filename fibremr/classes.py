@@ -168,7 +168,13 @@ def _flat_class(bar: Bar, flat: Flat, strength: float, *, minor: bool) -> PartCl
         limits, source = en.outstand(alpha, psi, eps, tip_compressed=tip), en.OUTSTAND
     if psi == -inf:  # not compressed while elastic: nothing is asked for class 3
         limits = (*limits[:2], inf)
-    return _class_of_part(flat.part, flat.ratio, limits, source)
+    found = _class_of_part(flat.part, flat.ratio, limits, source)
+    if found.number == 4 and 0.0 < most < strength:
+        # 5.5.2(9): class 4 may be treated as class 3 for the stress that there is (from memory)
+        raised = (0.0, 0.0, limits[2] * (strength / most) ** 0.5)
+        source += "; epsilon raised by 5.5.2(9) for the elastic stress in this part (from memory)"
+        found = min(found, _class_of_part(flat.part, flat.ratio, raised, source), key=lambda p: p.number)
+    return found
 
 
 def _compressed_share(bar: Bar, first: float, last: float) -> float:

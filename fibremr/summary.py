@@ -121,9 +121,9 @@ def trace_summary(result: TraceResult, *, where: str = "") -> str:
     lines += _rows(rows)
     lines += ["", *_limit_table(result)]
     for warning in r.warnings:
-        lines += _labelled("Note", warning)
+        lines += labelled("Note", warning)
     if where:
-        lines += _labelled("Written", where)
+        lines += labelled("Written", where)
     lines += ["", *wrap(NOT_IN_MODEL, WIDTH), CAUTION]
     return "\n".join(line.rstrip() for line in lines) + "\n"
 
@@ -264,7 +264,7 @@ def _limit_table(result: TraceResult) -> list[str]:
     end = float(result.curve.curvature[-1]) * (1.0 + 1e-9)
     for l in result.limits:
         if not l.applies:
-            notes += _labelled(l.method, f"does not apply: {l.why_not}")
+            notes += labelled(l.method, f"does not apply: {l.why_not}")
             continue
         remark = "governs" if l.governs else ""
         if l.curvature is not None and l.curvature > end:
@@ -282,9 +282,9 @@ def _limit_table(result: TraceResult) -> list[str]:
             )
         )
         if l.warning:
-            notes += _labelled(l.method, l.warning)
+            notes += labelled(l.method, l.warning)
     if result.case.limits.rotation_source:
-        notes += _labelled("R of own", f"from {result.case.limits.rotation_source}")
+        notes += labelled("R of own", f"from {result.case.limits.rotation_source}")
     return [*(table([header, *body]) if body else []), *notes]
 
 
@@ -314,10 +314,11 @@ def left_table(rows: Iterable[Sequence[str]]) -> list[str]:
 
 
 def _rows(rows: Iterable[tuple[str, str]]) -> list[str]:
-    return [line for label, text in rows for line in _labelled(label, text)]
+    return [line for label, text in rows for line in labelled(label, text)]
 
 
-def _labelled(label: str, text: str) -> list[str]:
+def labelled(label: str, text: str) -> list[str]:
+    """A label and a text beside it, wrapped to the width of the screen."""
     pieces = wrap(text, WIDTH - 14) or [""]
     if len(label) > 11:
         pieces = wrap(f"{label}: {text}", WIDTH - 4)
@@ -377,7 +378,7 @@ def read_summary(case: Case) -> str:
     if case.warnings:
         lines.append("")
     for warning in case.warnings:
-        lines += _labelled("Note", warning)
+        lines += labelled("Note", warning)
     return "\n".join(lines) + "\n"
 
 

@@ -43,7 +43,7 @@ class Branch:
         return float(self.moment[-1])
 
     def at(self, moment: Array) -> tuple[Array, Array, Array, Array]:
-        """Curvature, its slope, and both integrals at moments from zero up; level beyond the last one."""
+        """Curvature, its slope, and both integrals at moments from zero up; beyond the last it stays."""
         m = np.minimum(moment, self.largest)
         i = np.clip(np.searchsorted(self.moment, m, side="right") - 1, 0, self.moment.size - 2)
         width = self.moment[i + 1] - self.moment[i]
@@ -54,6 +54,8 @@ class Branch:
         first = self.first[i] + d * (k0 + k) / 2.0
         m0 = self.moment[i]
         second = self.second[i] + d * (k0 * (2 * m0 + m) + k * (m0 + 2 * m)) / 6.0
+        first = first + k * (moment - m)
+        second = second + k * (moment**2 - m**2) / 2.0
         return k, np.where(moment < self.largest, slope, 0.0), first, second
 
 

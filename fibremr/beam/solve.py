@@ -52,7 +52,7 @@ def solve(stations: Stations, response: Response, factor: float, *, start: Array
     gap_scale = scale / response.stiffness * sum(stations.beam.spans)
     energy, gradient, hessian = _energy(stations, response, factor, x)
     count = 0
-    while n and np.max(np.abs(gradient)) > 1e-11 * gap_scale:
+    while n and np.max(np.abs(gradient)) > 1e-10 * gap_scale:
         count += 1
         if count > MOST:
             raise NotConverged(
@@ -74,7 +74,8 @@ def solve(stations: Stations, response: Response, factor: float, *, start: Array
             break  # rounding: the energy cannot be lowered any further
     moment = stations.moment(factor, x)
     curvature = response.at(moment)[0]
-    rotation, weighted, _, _ = _intervals(stations, response, moment)
+    part = _intervals(stations, response, moment)
+    rotation, weighted = part.rotation, part.share * _lengths(stations)
     return Solution(
         stations,
         response,
@@ -125,42 +126,58 @@ def _lengths(stations: Stations) -> Array:
     return np.where(np.diff(stations.span) == 0, np.diff(stations.x), 0.0)
 
 
-def _intervals(stations: Stations, response: Response, moment: Array) -> tuple[Array, Array, Array, Array]:
-    """Over each interval: integrals of kappa, of kappa times distance, of its slope, and the energy."""
+@dataclass(frozen=True)
+class _Intervals:
+    """Integrals over each interval between stations, and their derivatives by the moments at its ends.
+
+    With t running from 0 to 1: `rotation` is the integral of kappa, `share` that of kappa t; `left`, `both`
+    and `right` are the derivatives of the integral of kappa (1 - t) by the left moment, of kappa t by the
+    left moment (and the other way round), and of kappa t by the right moment.
+    """
+
+    rotation: Array
+    share: Array
+    left: Array
+    both: Array
+    right: Array
+    energy: Array
+
+
+def _intervals(stations: Stations, response: Response, moment: Array) -> _Intervals:
     dx = _lengths(stations)
     k, slope, first, second = response.at(moment)
-    m1, m2 = moment[:-1], moment[1:]
-    rise = m2 - m1
-    flat = np.abs(rise) < 1e-7 * response.sagging.largest
+    k1, k2, m1 = k[:-1], k[1:], moment[:-1]
+    rise = np.diff(moment)
+    flat = np.abs(rise) < 1e-6 * response.sagging.largest
     safe = np.where(flat, 1.0, rise)
-    signed = np.where(moment >= 0.0, 1.0, -1.0) * 0.0 + first  # kappa dM is positive on both sides of zero
-    rotation = np.where(flat, (k[:-1] + k[1:]) / 2.0, (signed[1:] - signed[:-1]) / safe)
-    # distance from the left station is (M - M1)/rise of the interval
-    lever = np.where(
-        flat,
-        (k[:-1] + 2.0 * k[1:]) / 6.0,
-        ((second[1:] - second[:-1]) - m1 * (first[1:] - first[:-1])) / safe**2,
+    # the integral of kappa dM from zero is positive on both sides of zero
+    mean = np.where(flat, (k1 + k2) / 2.0, np.diff(first) / safe)
+    lever = np.where(flat, (k1 + 2.0 * k2) / 6.0, (np.diff(second) - m1 * np.diff(first)) / safe**2)
+    level = (slope[:-1] + slope[1:]) / 2.0
+    return _Intervals(
+        rotation=dx * mean,
+        share=dx * lever,
+        left=dx * np.where(flat, level / 3.0, (2.0 * mean - k1 - 2.0 * lever) / safe),
+        both=dx * np.where(flat, level / 6.0, (2.0 * lever - mean) / safe),
+        right=dx * np.where(flat, level / 3.0, (k2 - 2.0 * lever) / safe),
+        energy=dx * (first[:-1] + first[1:]) / 2.0,
     )
-    stiff = np.where(flat, (slope[:-1] + slope[1:]) / 2.0, (k[1:] - k[:-1]) / safe)
-    energy = (first[:-1] + first[1:]) / 2.0
-    return dx * rotation, dx * dx * lever, dx * stiff, dx * energy
 
 
 def _energy(stations: Stations, response: Response, factor: float, x: Array) -> tuple[float, Array, Array]:
     """Complementary energy, its gradient (the gaps in compatibility) and its Hessian."""
     unit = stations.unit
     moment = stations.moment(factor, x)
-    rotation, weighted, stiff, energy = _intervals(stations, response, moment)
+    part = _intervals(stations, response, moment)
     turn, turn_slope = response.turning(moment)
     turn, turn_slope = _once(stations, turn), _once(stations, turn_slope)
-    dx = _lengths(stations)
-    share = np.divide(weighted, dx, out=np.zeros_like(weighted), where=dx > 0.0)
     left, right = unit[:, :-1], unit[:, 1:]
-    gradient = left @ (rotation - share) + right @ share + unit @ turn
-    middle = (left + right) / 2.0
-    hessian = (middle * stiff) @ middle.T + (unit * turn_slope) @ unit.T
+    gradient = left @ (part.rotation - part.share) + right @ part.share + unit @ turn
+    cross = (left * part.both) @ right.T
+    hessian = (left * part.left) @ left.T + cross + cross.T + (right * part.right) @ right.T
+    hessian += (unit * turn_slope) @ unit.T
     excess = turn * turn / np.where(turn_slope > 0.0, 2.0 * turn_slope, 1.0)
-    return float(np.sum(energy) + np.sum(excess)), gradient, hessian
+    return float(np.sum(part.energy) + np.sum(excess)), gradient, hessian
 
 
 def _once(stations: Stations, turn: Array) -> Array:

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from fibremr.case.beam_table import BeamCase
+from fibremr.case.table import Entry
 from fibremr.case.units import System
 from fibremr.residual import Pattern
 from fibremr.rotation import Setup
@@ -12,19 +14,11 @@ from fibremr.steel.law import Law
 
 
 @dataclass(frozen=True)
-class Entry:
-    """One value of the case: its key, the value as text, and where it came from."""
-
-    key: str
-    value: str
-    origin: str
-
-
-@dataclass(frozen=True)
 class Steel:
     """The steel of one part: its law, ultimate strength [MPa] if known, density [kg/m3] and source.
 
-    `carbon` is false for stainless steel and aluminium, which have laws and classes of their own.
+    `carbon` is false for stainless steel and aluminium, which have laws and classes of their own;
+    `elongation` is the least elongation after fracture [1], None where the table has none.
     """
 
     law: Law
@@ -32,6 +26,7 @@ class Steel:
     density: float
     source: str
     carbon: bool
+    elongation: float | None
 
 
 @dataclass(frozen=True)
@@ -76,6 +71,7 @@ class Case:
     to: float | None
     setup: Setup | None
     limits: Limits
+    beam: BeamCase | None
     entries: tuple[Entry, ...]
     warnings: tuple[str, ...]
 

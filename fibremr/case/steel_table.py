@@ -259,7 +259,9 @@ def _resolve(spec: _SteelSpec, thickness: float, made: str) -> Steel | None:
     if law_name == "bilinear" and spec.hardening is None:
         notes.entry((*table.path, "hardening"), '"E/100"', "default, EN 1993-1-5 C.6(1)c")
     density = strength.density if strength else STEEL_DENSITY
-    return Steel(law, fu, density, source, strength is None or strength.carbon)
+    carbon = strength is None or strength.carbon
+    elongation = None if strength is None else strength.elongation or grades.elongation(strength)
+    return Steel(law, fu, density, source, carbon, elongation)
 
 
 def _slope(hardening: object, modulus: float) -> float:

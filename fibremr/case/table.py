@@ -9,7 +9,6 @@ from dataclasses import dataclass, field
 from math import isfinite
 from typing import Any, TypeVar
 
-from fibremr.case.records import Entry
 from fibremr.case.units import quantity
 from fibremr.errors import Fault, ValueFault, closest
 
@@ -44,6 +43,15 @@ def shown(value: Any) -> str:
     if isinstance(value, list):
         return "[" + ", ".join(shown(v) for v in value) + "]"
     return str(value)
+
+
+@dataclass(frozen=True)
+class Entry:
+    """One value of the case: its key, the value as text, and where it came from."""
+
+    key: str
+    value: str
+    origin: str
 
 
 @dataclass
@@ -114,6 +122,10 @@ class Table:
             return None
         self.notes.entry((*self.path, key), shown(self.data[key]), self._origin(key))
         return value
+
+    def note(self, key: str) -> None:
+        """Keep where a value came from that was read by other means than those above."""
+        self.notes.entry((*self.path, key), shown(self.data[key]), self._origin(key))
 
     def _origin(self, key: str) -> str:
         return self.notes.origins.get((*self.path, key), "given")

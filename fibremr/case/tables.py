@@ -6,6 +6,7 @@ from dataclasses import replace
 from pathlib import PurePath
 
 from fibremr.bending import Bar
+from fibremr.case.beam_table import read_beam
 from fibremr.case.records import Bending, Case, Limits, Steel
 from fibremr.case.section_table import read_section
 from fibremr.case.steel_table import read_steels
@@ -23,7 +24,7 @@ LATER_PATTERNS = (
 CODES = ("EN 1993-1-1:2005",)
 LATER_CODES = ("EN 1993-1-1:2022", "AISC 360-22", "AISC 360", "SANS 10162-1:2011", "SANS 10162-1")
 SETUPS = ("three-point", "four-point", "cantilever", "uniform load", "end moment")
-OTHER_TABLES = ("beam", "choose", "study")  # for other commands than those of this version
+OTHER_TABLES = ("choose", "study")  # for other commands than those of this version
 
 
 def read_tables(root: Table, *, file: str, sha256: str) -> Case | None:
@@ -49,6 +50,8 @@ def read_tables(root: Table, *, file: str, sha256: str) -> Case | None:
     setup = _rotation(rotation_table) if rotation_table else None
     residual_table = root.table("residual")
     pattern, scale = _residual(residual_table) if residual_table else (None, 1.0)
+    beam_table = root.table("beam")
+    beam = read_beam(beam_table) if beam_table else None
     root.finish()
     if section is not None and steels is not None:
         _check_axial(section, steels[0], axial, bending_table)
@@ -71,6 +74,7 @@ def read_tables(root: Table, *, file: str, sha256: str) -> Case | None:
         to=to,
         setup=setup,
         limits=limits,
+        beam=beam,
         entries=(),
         warnings=(),
     )

@@ -20,6 +20,7 @@ if TYPE_CHECKING:
 # name -> module and one line for the list of commands, kept here so that the list imports nothing
 COMMANDS = {
     "trace": ("fibremr.cli.trace", "How a section bends and how far it can turn."),
+    "justify": ("fibremr.cli.justify", "May plastic hinges be assumed in this beam?"),
     "read": ("fibremr.cli.read", "The case as understood, value by value; analyses nothing."),
     "new": ("fibremr.cli.new", "Write a commented case to start from."),
     "profiles": ("fibremr.cli.tables", "The profiles of the shipped tables."),

@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING
 
 import matplotlib as mpl
 
+from fibremr.figures.beam import beam, hinges, ladder
 from fibremr.figures.curves import moment_curvature, moment_rotation
 from fibremr.figures.section import section
 from fibremr.figures.stages import stress_stages
@@ -20,30 +21,45 @@ from fibremr.figures.style import STYLE
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
+    from fibremr.justification import JustifyResult
     from fibremr.tracing import TraceResult
 
 
-def names(result: TraceResult) -> tuple[str, ...]:
+def names(result: TraceResult | JustifyResult) -> tuple[str, ...]:
     """The pictures that a result has."""
-    turning = ("moment-rotation",) if result.turn is not None else ()
-    return ("section", "moment-curvature", *turning, "stress-stages")
+    trace = _trace(result)
+    turning = ("moment-rotation",) if trace.turn is not None else ()
+    found = ("section", "moment-curvature", *turning, "stress-stages")
+    if trace is result:
+        return found
+    return ("beam", "ladder", *(("hinges",) if getattr(result, "hinges", ()) else ()), *found)
 
 
-def draw(result: TraceResult, name: str) -> Figure:
+def draw(result: TraceResult | JustifyResult, name: str) -> Figure:
     """A picture by name. Raises KeyError for a picture that the result does not have."""
-    makers: dict[str, Callable[[TraceResult], Figure]] = {
+    of_section: dict[str, Callable[[TraceResult], Figure]] = {
         "section": section,
         "moment-curvature": moment_curvature,
         "moment-rotation": moment_rotation,
         "stress-stages": stress_stages,
     }
+    of_beam: dict[str, Callable[[JustifyResult], Figure]] = {"beam": beam, "ladder": ladder, "hinges": hinges}
     if name not in names(result):
         raise KeyError(f"no picture {name!r}; there are {', '.join(names(result))}")
     with mpl.rc_context(STYLE):  # type: ignore[arg-type]
-        return makers[name](result)
+        if name in of_beam:
+            return of_beam[name](result)  # type: ignore[arg-type]
+        return of_section[name](_trace(result))
 
 
-def write_all(result: TraceResult, folder: Path) -> None:
+def _trace(result: TraceResult | JustifyResult) -> TraceResult:
+    """The trace of the section in a result of either kind."""
+    from fibremr.tracing import TraceResult
+
+    return result if isinstance(result, TraceResult) else result.section
+
+
+def write_all(result: TraceResult | JustifyResult, folder: Path) -> None:
     """Write every picture of a result into a folder, as SVG and PNG."""
     for name in names(result):
         figure = draw(result, name)

@@ -38,16 +38,21 @@ STYLE: dict[str, Any] = {
 
 
 def new_figure(result: TraceResult, width: float, height: float, what: str) -> Figure:
-    """An empty picture of a size [in], headed by the case's title and what it shows."""
+    """An empty picture of a size [in] of a trace, headed by the case's title and what it shows."""
+    case, record = result.case, result.record
+    axial = axial_words(case)
+    under = f"{what}: {record.section.name}, {axis_words(case)}{', ' + axial if axial else ''}"
+    if record.class_.section is not None:
+        under += f"; class {record.class_.section}"
+    return headed(case.title, under, width, height)
+
+
+def headed(title: str, under: str, width: float, height: float) -> Figure:
+    """An empty picture of a size [in] with a title and a line under it, cut where they would not fit."""
     figure = Figure(figsize=(width, height))
     FigureCanvasAgg(figure)
-    r, case = result.record, result.case
     across = int(72 * width / 5.9)  # letters of the title's size that fit
-    figure.text(0.012, 0.985, shorten(case.title, across, placeholder=" ..."), fontsize=10, va="top")
-    axial = axial_words(case)
-    under = f"{what}: {r.section.name}, {axis_words(case)}{', ' + axial if axial else ''}"
-    if r.class_.section is not None:
-        under += f"; class {r.class_.section}"
+    figure.text(0.012, 0.985, shorten(title, across, placeholder=" ..."), fontsize=10, va="top")
     under = shorten(under, int(72 * width / 4.7), placeholder=" ...")
     figure.text(0.012, 0.985 - 0.20 / height, under, fontsize=8, va="top", color=GREY)
     return figure

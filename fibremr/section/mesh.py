@@ -49,23 +49,29 @@ def points(
     *,
     modulus: float,
     target: float,
+    focus: float,
     breaks: Mapping[str, Sequence[float]] | None = None,
     across: int = 1,
 ) -> Points:
     """Points of a section for bending about its horizontal axis.
 
     `target` is the error of the moment aimed at, as a share of the plastic moment, and `modulus` the
-    plastic modulus [mm3]. `breaks` names the parts with a residual stress that changes along them and
-    where its slope jumps (shares of the length); each stretch between breaks gets at least `across`
+    plastic modulus [mm3]. Cells shrink towards the height `focus` [mm], the plastic neutral axis, where
+    the last elastic core lies. `breaks` names the parts with a residual stress that changes along them
+    and where its slope jumps (shares of the length); each stretch between breaks gets at least `across`
     cells along the plate.
     """
+    bottom, top = section.extent
+    # a core of depth d is met by cells of a quarter of d, down to a four-thousandth of the depth
+    shares = 2.0 ** (-np.arange(10, 37) / 3.0)
+    levels = [focus, *(focus + (top - bottom) * np.concatenate([shares, -shares]))]
     pieces = []
     for index, part in enumerate(section.parts):
         if isinstance(part.body, Plate):
             stretches = None if breaks is None else breaks.get(part.name)
-            v, u, area, at = _plate(part.body, modulus, target, stretches, across)
+            v, u, area, at = _plate(part.body, modulus, target, levels, stretches, across)
         else:
-            v, u, area = _region(part, modulus, target)
+            v, u, area = _region(part, modulus, target, levels)
             at = np.full_like(u, 0.5)
         pieces.append((v, u, area, np.full(u.shape, index, dtype=np.intp), at))
     columns = [np.concatenate(column) for column in zip(*pieces, strict=True)]
@@ -73,53 +79,69 @@ def points(
 
 
 def _plate(
-    plate: Plate, modulus: float, target: float, breaks: Sequence[float] | None, across: int
+    plate: Plate,
+    modulus: float,
+    target: float,
+    levels: Sequence[float],
+    breaks: Sequence[float] | None,
+    across: int,
 ) -> tuple[Array, Array, Array, Array]:
     length, thickness = plate.length, plate.thickness
     ev, eu = plate.along
     rise_along, rise_through = length * abs(eu), thickness * abs(ev)
     area = length * thickness
+    graded_along: list[float] = []
+    graded_through: list[float] = []
     if rise_along > rise_through:
         n_along = ceil(rise_along / cell_height(target, modulus, area / rise_along))
         n_through = max(1, ceil(rise_through / cell_height(target, modulus, length)))
+        if rise_through < 1e-9 * rise_along:
+            graded_along = [(u - plate.start[1]) / (length * eu) for u in levels]
     else:
         # where residual stress varies along the plate it yields in patches, and layers count for less
         share = target if breaks is None else 4.0 * target
         n_through = ceil(rise_through / cell_height(share, modulus, area / rise_through))
         n_along = max(1, ceil(rise_along / cell_height(target, modulus, thickness)))
-    edges = [0.0, *sorted(b for b in breaks or () if 0.0 < b < 1.0), 1.0]
-    counts = [
-        max(ceil(n_along * (b - a)), across if breaks is not None else 1)
-        for a, b in zip(edges, edges[1:], strict=False)
-    ]
-    ends = np.concatenate(
-        [np.linspace(a, b, n, endpoint=False) for a, b, n in zip(edges, edges[1:], counts, strict=False)]
-        + [np.ones(1)]
-    )
-    gauss = 0.5 / sqrt(3.0)
-    step = np.diff(ends)
-    middle = ends[:-1] + step / 2.0
-    s = np.concatenate([middle - gauss * step, middle + gauss * step])
-    ws = np.concatenate([step, step]) / 2.0
-    n = n_through
-    centre = (np.arange(n) + 0.5) / n - 0.5
-    t = np.concatenate([centre - gauss / n, centre + gauss / n]) * thickness
-    wt = np.full(2 * n, 0.5 / n)
+        if rise_along < 1e-9 * rise_through:
+            graded_through = [0.5 + (u - plate.start[1]) / (thickness * ev) for u in levels]
+    s, ws = _gauss(_cells(n_along, breaks or (), graded_along, across if breaks is not None else 1))
+    t, wt = _gauss(_cells(n_through, (), graded_through, 1))
     sv, su = plate.start
     at = np.repeat(s, t.size)
-    through = np.tile(t, s.size)
+    through = np.tile(t - 0.5, s.size) * thickness
     v = sv + at * length * ev - through * eu
     u = su + at * length * eu + through * ev
     return v, u, (np.outer(ws, wt) * area).ravel(), at
 
 
-def _region(part: Part, modulus: float, target: float) -> tuple[Array, Array, Array]:
+def _cells(count: int, breaks: Sequence[float], graded: Sequence[float], least: int) -> Array:
+    """Bounds of cells over a length of one: even, between breaks at least so many, and at graded places."""
+    edges = [0.0, *sorted(b for b in breaks if 0.0 < b < 1.0), 1.0]
+    even = [
+        np.linspace(a, b, max(ceil(count * (b - a)), least), endpoint=False)
+        for a, b in zip(edges, edges[1:], strict=False)
+    ]
+    inside = np.array([g for g in graded if 1e-9 < g < 1.0 - 1e-9])
+    bounds = np.unique(np.concatenate([*even, inside, np.ones(1)]))
+    kept = np.concatenate([[True], np.diff(bounds) > 1e-12])
+    return np.asarray(bounds[kept], dtype=np.float64)
+
+
+def _gauss(bounds: Array) -> tuple[Array, Array]:
+    """Two Gauss points in each cell and their weights."""
+    step = np.diff(bounds)
+    middle = bounds[:-1] + step / 2.0
+    reach = 0.5 / sqrt(3.0) * step
+    return np.concatenate([middle - reach, middle + reach]), np.concatenate([step, step]) / 2.0
+
+
+def _region(part: Part, modulus: float, target: float, levels: Sequence[float]) -> tuple[Array, Array, Array]:
     """Points of a region cut into strips across u; strips are denser where its outline runs level."""
     outline = part.outline
-    levels = _levels(outline)
+    turns = _levels(outline)
     total = part.moments.area
     cells = []
-    for low, high in zip(levels, levels[1:], strict=False):
+    for low, high in zip(turns, turns[1:], strict=False):
         slice_area = outline.above(low)[0] - outline.above(high)[0]
         if slice_area <= 1e-14 * total:
             continue
@@ -127,6 +149,10 @@ def _region(part: Part, modulus: float, target: float) -> tuple[Array, Array, Ar
         count = max(2, ceil(1.5 * (high - low) / cell_height(target, modulus, width)))
         bounds = (low + high) / 2 - (high - low) / 2 * np.cos(np.arange(count + 1) * pi / count)
         bounds[0], bounds[-1] = low, high
+        graded = [u for u in levels if low + 1e-6 * (high - low) < u < high - 1e-6 * (high - low)]
+        bounds = np.unique(np.concatenate([bounds, graded]))
+        bounds = bounds[np.concatenate([[True], np.diff(bounds) > 1e-9 * (high - low)])]
+        bounds[-1] = high
         cells.append(_strips(outline, bounds))
     area, mean_v, mean_u, vv, uu, vu = (np.concatenate(c) for c in zip(*cells, strict=True))
     # principal radii of gyration of each cell, and its four points

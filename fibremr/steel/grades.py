@@ -161,3 +161,9 @@ def find(grade: str, thickness: float, *, made: str, standards: tuple[str, ...],
         key="grade",
         allowed=f"up to {max(b.upto for b in bands):g} mm, or yield given directly",
     )
+
+
+def elongation(strength: Strength) -> float | None:
+    """Least elongation of a grade in whatever band of the tables gives one [1]: the smallest of them."""
+    same = [s for s in strengths() if names(s.grade) & names(strength.grade) and s.elongation is not None]
+    return min((s.elongation for s in same if s.elongation is not None), default=None)

@@ -177,7 +177,7 @@ def test_fibres_are_merged_without_loss() -> None:
     from fibremr.section import mesh
 
     section: Section = profile("HEA 260")
-    points = mesh.points(section, modulus=1e6, target=5e-4)
+    points = mesh.points(section, modulus=1e6, target=5e-4, focus=125.0)
     zero = np.zeros_like(points.u)
     u, area, _, _ = mesh.merged(points.u, points.area, zero, points.part * 0)
     assert u.size < 0.6 * points.u.size

@@ -153,8 +153,12 @@ def test_rectangular_cantilever_ends_at_twenty_ninths() -> None:
     curve, _ = builders.curve_through(bar, [unit, 1500.0 * unit])
     turn, sag = Setup("cantilever", 1000.0).rotations(curve.curvature, curve.moment)
     i = int(np.argmin(np.abs(curve.curvature - unit)))
-    assert sag[-1] / sag[i] == pytest.approx(20.0 / 9.0, rel=2e-4)
-    assert turn[-1] / turn[i] == pytest.approx(2.0, rel=2e-4)
+    # kappa/kappa_y = 1/sqrt(3 - 2m) gives (5 - (3 + m) sqrt(3 - 2m))/m^2, which comes to 20/9 at m = 1.5
+    m = 1.5 - 0.5 / 1500.0**2
+    exact = (5.0 - (3.0 + m) / 1500.0) / m**2
+    assert exact == pytest.approx(20.0 / 9.0, rel=1e-3)
+    assert sag[-1] / sag[i] == pytest.approx(exact, rel=2e-4)
+    assert turn[-1] / turn[i] == pytest.approx((3.0 - 1.0 / 750.0 * 0.75) / 1.5, rel=3e-4)
 
 
 @pytest.mark.parametrize(

@@ -48,6 +48,7 @@ def test_balance(pattern: Pattern, name: str, minor: bool) -> None:
             bar.section,
             modulus=bar.plastic.modulus,
             target=1e-5,
+            focus=bar.plastic.axis,
             breaks=residual.breaks(bar.section),
             across=5,
         )
