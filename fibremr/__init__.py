@@ -14,6 +14,8 @@ _WHERE = {
     "read_case": "fibremr.case.reader",
     "trace": "fibremr.tracing",
     "TraceResult": "fibremr.tracing",
+    "justify": "fibremr.justification",
+    "JustifyResult": "fibremr.justification",
     "Section": "fibremr.section.parts",
     "i_section": "fibremr.section.shapes",
     "build": "fibremr.section.shapes",
@@ -32,6 +34,7 @@ __all__ = ["__version__", *_WHERE]
 
 if TYPE_CHECKING:
     from fibremr.case.reader import read_case as read_case
+    from fibremr.justification import justify as justify
     from fibremr.tracing import trace as trace
 
 

@@ -31,18 +31,8 @@ def justify_summary(result: JustifyResult, *, where: str = "") -> str:
     unknown = [c.check for c in result.checks if c.verdict == code_line.UNKNOWN]
     if unknown:
         lines += labelled("To be shown", f"{', '.join(unknown)}: not known from the case or its table")
-    d = result.deflection
-    if d is not None:
-        limit = (
-            ""
-            if d.limit is None
-            else f", {number(s.show(d.limit, 'length'), 3)} {s.length} allowed: {d.verdict}"
-        )
-        lines += labelled(
-            "Deflection",
-            f"{number(s.show(d.largest, 'length'), 3)} {s.length} in span {d.span + 1} at service factor "
-            f"{typed(result.beam.service or 0.0)}{limit}",
-        )
+    if (deflection := deflection_words(result)) is not None:
+        lines += labelled("Deflection", deflection)
     reactions = ", ".join(number(s.show(r, "force")) for r in code_line.reactions(result.shown))
     lines += labelled("Reactions", f"{reactions} {s.force}; {redistribution_words(result)}")
     lines += labelled("Section", f"{result.section.record.section.name}; {case.base.source}")
@@ -112,7 +102,20 @@ def hinge_words(result: JustifyResult, h: HingeVerdict) -> str:
         text += f", use {h.use:.2f}"
     both = [("case law", h.case_law), ("elastic-plastic", h.elastic_plastic)]
     shown = ", ".join(f"{n} {1e3 * r:.2f}" for n, r in both if r is not None)
-    return f"{text}; theta_p {1e3 * hinge.theta_p:.2f} mrad ({shown}): {h.verdict}"
+    laws = f" ({shown})" if shown else ""
+    return f"{text}; theta_p {1e3 * hinge.theta_p:.2f} mrad{laws}: {h.verdict}"
+
+
+def deflection_words(result: JustifyResult) -> str | None:
+    """The largest deflection against its limit; None when it was not asked for."""
+    d, s = result.deflection, result.case.system
+    if d is None:
+        return None
+    text = f"{number(s.show(d.largest, 'length'), 3)} {s.length} in span {d.span + 1}"
+    text += f" at service factor {typed(result.beam.service or 0.0)}"
+    if d.limit is None:
+        return text
+    return f"{text}, {number(s.show(d.limit, 'length'), 3)} {s.length} allowed: {d.verdict}"
 
 
 def redistribution_words(result: JustifyResult) -> str:

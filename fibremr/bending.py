@@ -130,7 +130,7 @@ class Bar:
         return self._first_yield(residual)[0]
 
     def first_to_yield(self, residual: Residual | None) -> str:
-        """The name of the part that yields first."""
+        """The name of the part that yields first, or of those that do together."""
         return self._first_yield(residual)[1]
 
     def _first_yield(self, residual: Residual | None) -> tuple[float, str]:
@@ -143,8 +143,10 @@ class Bar:
         with np.errstate(divide="ignore", invalid="ignore"):
             places = np.where(slope == 0.0, inf, room / np.abs(slope))
         places[np.abs(start) >= first * (1.0 - 1e-12)] = 0.0
-        earliest = int(np.argmin(places))
-        return float(places[earliest]), self.section.parts[int(points.part[earliest])].name
+        least = float(places.min())
+        together = points.part[places <= least * (1.0 + 1e-9)]
+        names = dict.fromkeys(self.section.parts[int(i)].name for i in together)
+        return least, " and ".join(names)
 
 
 def fibres(bar: Bar, residual: Residual | None, target: float, across: int) -> kernel.Fibres:

@@ -215,7 +215,7 @@ def restraint_checks(case: Case, beam: BeamCase, solution: Solution, hinges: lis
                 good = length <= most * (1.0 + 1e-9)
                 allowed = f"{most / 1e3:.2f} m"
                 if not good:
-                    allowed += f" (hold it at {needed / 1e3:.2f} m)"
+                    allowed += f" there (a restraint at {needed / 1e3:.2f} m would do)"
                 if not straight:
                     allowed += "; the rule assumes a straight moment, which this is not"
                 where = "left" if side < 0 else "right"

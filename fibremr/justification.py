@@ -16,8 +16,8 @@ from fibremr.beam.collapse import Collapse, collapse
 from fibremr.beam.hinges import Hinge, at_region, hinges, scaled_rotation
 from fibremr.beam.model import FIXED, Stations, stations
 from fibremr.beam.response import Branch, Response
-from fibremr.beam.solve import Solution, elastic_redundants, solve
-from fibremr.bending import Bar, Curve, trace_curve
+from fibremr.beam.solve import Solution, Solver, elastic_redundants, solve
+from fibremr.bending import Bar, Curve, extended, trace_curve
 from fibremr.case.beam_table import BeamCase
 from fibremr.case.records import Case
 from fibremr.case.tables import bar_of
@@ -25,6 +25,8 @@ from fibremr.classes import SectionClass, classify
 from fibremr.code_line import Check
 from fibremr.errors import CaseError, Fault
 from fibremr.limits import class_rotation, own
+from fibremr.residual import EccsRolled
+from fibremr.section.shapes import BoxShape, IShape, RectangleShape, TubeShape
 from fibremr.solve.roots import find_root
 from fibremr.steel.bilinear import Bilinear
 from fibremr.tracing import TraceResult, trace
@@ -214,8 +216,8 @@ def justify(case: Case) -> JustifyResult:
         raise CaseError([fault])
     beam = case.beam
     section = trace(case)
-    curves = {sense: _curve(case, sense, plastic=False) for sense in (1, -1)}
-    bars = {sense: curve.bar for sense, curve in curves.items()}
+    curves = _curves(case, traced=section.curve)
+    bars = {sense: replace(bar_of(case), sense=sense) for sense in (1, -1)}
     response = Response(Branch.of(curves[1]), Branch.of(curves[-1]))
     plastic = (bars[1].plastic.moment, bars[-1].plastic.moment)
     place = stations(beam.beam)
@@ -240,7 +242,7 @@ def justify(case: Case) -> JustifyResult:
         for h in _all_hinges(shown, plastic_solution, *plastic)
     )
     found = [h.hinge for h in judged]
-    ladder = _ladder(place, response, bars, plastic, simple, most, hardens, section, judge)
+    ladder = _ladder(place, response, ideal, bars, plastic, simple, most, hardens, judge)
     checks = _checks(case, beam, shown, found, judged, simple)
     code = _code_verdict(checks)
     rotation, why = _rotation_verdict(shown, judged, plastic, bars, judge, simple)
@@ -282,8 +284,26 @@ def _curve(case: Case, sense: int, *, plastic: bool) -> Curve:
     return trace_curve(bar, residual, stops=stops)
 
 
+def _curves(case: Case, *, traced: Curve | None = None, plastic: bool = False) -> dict[int, Curve]:
+    """The section's curve in both senses; one does for both where top and bottom are alike.
+
+    `traced` is one that is there already, and is gone on with.
+    """
+    if traced is not None and traced.bar.sense == 1:
+        sagging = extended(traced, [FAR * traced.bar.unit_curvature])
+    else:
+        sagging = _curve(case, 1, plastic=plastic)
+    shape = case.section.shape
+    alike = isinstance(shape, BoxShape | TubeShape | RectangleShape)
+    alike |= isinstance(shape, IShape) and shape.symmetric
+    if alike and (case.pattern is None or case.pattern.name == EccsRolled.name):
+        return {1: sagging, -1: sagging}
+    return {1: sagging, -1: _curve(case, -1, plastic=plastic)}
+
+
 def _ideal(case: Case) -> Response:
-    return Response(*(Branch.of(_curve(case, sense, plastic=True)) for sense in (1, -1)))
+    curves = _curves(case, plastic=True)
+    return Response(Branch.of(curves[1]), Branch.of(curves[-1]))
 
 
 def _largest(place: Stations, response: Response, simple: Collapse, hardens: bool) -> float:
@@ -291,8 +311,10 @@ def _largest(place: Stations, response: Response, simple: Collapse, hardens: boo
     if not hardens:
         return simple.factor
 
+    at = Solver(place, response)
+
     def past(factor: float) -> float:
-        moment = solve(place, response, factor).moment
+        moment = at(factor).moment
         return (
             float(np.max(np.maximum(moment / response.sagging.largest, -moment / response.hogging.largest)))
             - 1.0
@@ -306,7 +328,7 @@ def _largest(place: Stations, response: Response, simple: Collapse, hardens: boo
     )
     if past(high) <= 0.0:
         return high
-    return find_root(past, 0.5 * simple.factor, high, tolerance=1e-6)
+    return find_root(past, 0.8 * simple.factor, high, tolerance=2e-6)
 
 
 def _all_hinges(shown: Solution, other: Solution | None, sagging: float, hogging: float) -> list[Hinge]:
@@ -385,8 +407,8 @@ class _Judge:
 
 
 def _ladder(
-    place: Stations, response: Response, bars: dict[int, Bar], plastic: tuple[float, float], simple: Collapse,
-    most: float, hardens: bool, section: TraceResult, judge: _Judge,
+    place: Stations, response: Response, ideal: Response, bars: dict[int, Bar], plastic: tuple[float, float],
+    simple: Collapse, most: float, hardens: bool, judge: _Judge,
 ) -> Ladder:  # fmt: skip
     residuals = {s: judge.curves[s].residual for s in (1, -1)}
     first_moment = {s: bars[s].first_yield_curvature(residuals[s]) * bars[s].elastic.bending for s in (1, -1)}
@@ -396,22 +418,33 @@ def _ladder(
     reach = 1.0 if hardens else NEAR_MP
     last = most * (1.0 - 1e-6)
 
+    at, ideal_at = Solver(place, response), Solver(place, ideal)
+
     def peak(factor: float) -> float:
-        moment = solve(place, response, factor).moment
+        moment = at(factor).moment
         return float(np.max(np.maximum(moment / plastic[0], -moment / plastic[1]))) - reach
 
     first_hinge = _first_root(peak, first_yield * 0.999, last)
 
     def over(factor: float) -> float:
-        solution = solve(place, response, factor)
+        solution = at(factor)
+        other = None
+        if factor < simple.factor * (1.0 - 1e-6):
+            other = solution if ideal is response else ideal_at(factor)
         worst = -1.0
-        for hinge in hinges(solution, *plastic):
-            verdict = judge.hinge(solution, None, hinge, True)
-            if verdict.use is not None:
-                worst = max(worst, verdict.use - 1.0)
+        for hinge in _all_hinges(solution, other, *plastic):
+            use = judge.hinge(solution, other, hinge, True).use
+            if use is not None:
+                worst = max(worst, use - 1.0)
         return worst
 
-    limit = None if first_hinge is None else _first_root(over, first_hinge, last)
+    limit = None
+    if first_hinge is not None:
+        # elastic-plastic steel asks for the more, and only up to its collapse: look on both sides of it
+        below = min(last, simple.factor * (1.0 - 2e-6))
+        limit = _first_root(over, min(first_hinge, below), below)
+        if limit is None and last > below:
+            limit = _first_root(over, simple.factor, last)
     return Ladder(first_yield, first_hinge, limit, simple.factor, most)
 
 
@@ -421,7 +454,7 @@ def _first_root(function: Callable[[float], float], low: float, high: float) -> 
         return None
     if function(low) >= 0.0:
         return low
-    return find_root(function, low, high, tolerance=5e-7)
+    return find_root(function, low, high, tolerance=1e-6)
 
 
 def _checks(

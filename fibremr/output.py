@@ -63,6 +63,10 @@ class Folder:
         """Lay a text file."""
         (self._stage / name).write_text(text, encoding="utf-8", newline="\n")
 
+    def pictures(self) -> dict[str, str]:
+        """The SVG pictures laid so far, by name."""
+        return {p.stem: p.read_text(encoding="utf-8") for p in sorted(self._stage.glob("*.svg"))}
+
     def commit(self) -> None:
         """Put the new files in the place of the old ones; an interrupt waits until that is done."""
         with _uninterrupted():

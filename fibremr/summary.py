@@ -89,10 +89,23 @@ def axial_words(case: Case) -> str:
 
 def trace_summary(result: TraceResult, *, where: str = "") -> str:
     """A trace on one screen."""
-    r, case, say = result.record, result.case, _Words(result.case)
+    r, case = result.record, result.case
     lines = wrap(f"How does this section bend, and how far can it turn?  {case.title}", WIDTH)
-    lines += [f"  {line}" for line in wrap(_answer(result), WIDTH - 2)]
+    lines += [f"  {line}" for line in wrap(answer(result), WIDTH - 2)]
     lines.append("")
+    lines += _rows(section_rows(result))
+    lines += ["", *_limit_table(result)]
+    for warning in r.warnings:
+        lines += labelled("Note", warning)
+    if where:
+        lines += labelled("Written", where)
+    lines += ["", *wrap(NOT_IN_MODEL, WIDTH), CAUTION]
+    return "\n".join(line.rstrip() for line in lines) + "\n"
+
+
+def section_rows(result: TraceResult) -> list[tuple[str, str]]:
+    """What a trace says of the section and its curve, as labels and texts."""
+    r, case, say = result.record, result.case, _Words(result.case)
     axial = axial_words(case)
     rows = [
         ("Section", f"{r.section.name}, {axis_words(case)}; held sideways{'; ' + axial if axial else ''}")
@@ -118,17 +131,10 @@ def trace_summary(result: TraceResult, *, where: str = "") -> str:
             f"over the curve, traced to {say.curvature(result.curve.curvature[-1] * 1e3)}",
         )
     )
-    lines += _rows(rows)
-    lines += ["", *_limit_table(result)]
-    for warning in r.warnings:
-        lines += labelled("Note", warning)
-    if where:
-        lines += labelled("Written", where)
-    lines += ["", *wrap(NOT_IN_MODEL, WIDTH), CAUTION]
-    return "\n".join(line.rstrip() for line in lines) + "\n"
+    return rows
 
 
-def _answer(result: TraceResult) -> str:
+def answer(result: TraceResult) -> str:
     """The headline: yielding, what the moment comes to, and how far it turns."""
     r, say, governs = result.record, _Words(result.case), result.governs
     mp, first = r.moments.Mp_kNm, r.moments.first_yield_kNm
@@ -253,18 +259,17 @@ def _class(result: TraceResult) -> str:
     return f"{c.section} by {c.code} ({'; '.join(parts) or 'nothing compressed'})"
 
 
-def _limit_table(result: TraceResult) -> list[str]:
+def limit_rows(result: TraceResult) -> list[tuple[str, ...]]:
+    """The limits that apply, row by row under a head; nothing when none applies."""
     s = result.case.system
     header = (
         "Limit", "strain %", f"curv. {s.curvature}", f"moment {s.moment}", "rotation mrad", "plastic mrad",
         "R [-]", "",
     )  # fmt: skip
-    body = []
-    notes: list[str] = []
+    body: list[tuple[str, ...]] = []
     end = float(result.curve.curvature[-1]) * (1.0 + 1e-9)
     for l in result.limits:
         if not l.applies:
-            notes += labelled(l.method, f"does not apply: {l.why_not}")
             continue
         remark = "governs" if l.governs else ""
         if l.curvature is not None and l.curvature > end:
@@ -281,11 +286,20 @@ def _limit_table(result: TraceResult) -> list[str]:
                 remark,
             )
         )
-        if l.warning:
+    return [header, *body] if body else []
+
+
+def _limit_table(result: TraceResult) -> list[str]:
+    rows = limit_rows(result)
+    notes: list[str] = []
+    for l in result.limits:
+        if not l.applies:
+            notes += labelled(l.method, f"does not apply: {l.why_not}")
+        elif l.warning:
             notes += labelled(l.method, l.warning)
     if result.case.limits.rotation_source:
         notes += labelled("R of own", f"from {result.case.limits.rotation_source}")
-    return [*(table([header, *body]) if body else []), *notes]
+    return [*(table(rows) if rows else []), *notes]
 
 
 def _maybe(value: float | None, factor: float = 1.0) -> str:

@@ -90,6 +90,23 @@ def solve(stations: Stations, response: Response, factor: float, *, start: Array
     )
 
 
+class Solver:
+    """Solves a beam at one load factor after another, each from the last solution."""
+
+    def __init__(self, stations: Stations, response: Response) -> None:
+        self._stations = stations
+        self._response = response
+        self._last: Solution | None = None
+
+    def __call__(self, factor: float) -> Solution:
+        """The solution at a load factor; see `solve`."""
+        start = None
+        if self._last is not None and abs(factor / self._last.factor - 1.0) < 0.5:
+            start = self._last.redundants
+        self._last = solve(self._stations, self._response, factor, start=start)
+        return self._last
+
+
 def elastic_redundants(stations: Stations, factor: float) -> Array:
     """Support moments of the elastic beam of constant E I [Nmm]."""
     unit, dx = stations.unit, _lengths(stations)

@@ -185,6 +185,8 @@ def _loads(table: Table, spans: tuple[float, ...] | None) -> tuple[Load, ...] | 
                 table.sound = False
                 break
             found.append(Load(span, uniform or 0.0, point or 0.0, at or 0.0))
+    if table.sound and not any(load.uniform or load.point for load in found):
+        table.fail("loads", ValueFault("all loads are zero: nothing bends", allowed="a load on some span"))
     return tuple(found)
 
 

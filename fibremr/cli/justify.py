@@ -30,7 +30,7 @@ def justify(
     from contextlib import ExitStack
     from dataclasses import replace
 
-    from fibremr import output
+    from fibremr import output, report
     from fibremr.justification import JUSTIFIED
     from fibremr.justification import justify as run
 
@@ -49,6 +49,7 @@ def justify(
                 from fibremr import figures
 
                 figures.write_all(result, folder.stage)
+            folder.write("report.html", report.justify_report(result, folder.pictures()))
             files = tuple(sorted([*(p.name for p in folder.stage.iterdir()), output.LIST]))
             result = replace(result, files=files)
             folder.write(output.LIST, output.json_text(result.as_dict()))

@@ -7,7 +7,7 @@ from pathlib import Path
 
 import click
 
-STARTERS = {"trace": "starter-trace.toml"}
+STARTERS = {"trace": "starter-trace.toml", "justify": "starter-justify.toml"}
 
 
 @click.command()

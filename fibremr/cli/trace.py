@@ -31,7 +31,7 @@ def trace(
     from contextlib import ExitStack
     from dataclasses import replace
 
-    from fibremr import output
+    from fibremr import output, report
     from fibremr.tracing import trace as run
 
     read = load(case, settings)
@@ -48,6 +48,7 @@ def trace(
                 from fibremr import figures
 
                 figures.write_all(result, folder.stage)
+            folder.write("report.html", report.trace_report(result, folder.pictures()))
             files = tuple(sorted([*(p.name for p in folder.stage.iterdir()), output.LIST]))
             result = replace(result, record=replace(result.record, files=files))
             folder.write(output.LIST, output.json_text(result.record.as_dict()))

@@ -284,7 +284,7 @@ def test_a_later_run_replaces_just_its_own_files(capsys: pytest.CaptureFixture[s
     assert traced(capsys, "--out", "o") == 0
     assert "section.svg" in names("o")
     assert traced(capsys, "--out", "o", "--no-figures") == 0
-    assert names("o") == {"results.json", "moment-curvature.csv", "moment-rotation.csv"}
+    assert names("o") == {"results.json", "report.html", "moment-curvature.csv", "moment-rotation.csv"}
 
 
 @pytest.mark.parametrize("foreign", ["note.txt", "moment-curvature.xlsx", "sub"])
@@ -324,7 +324,7 @@ def test_the_working_folder_itself(
     Path("case.toml").write_text(GOOD)
     monkeypatch.chdir("here")
     assert run(capsys, "trace", "../case.toml", "--out", ".", "--no-figures", "--quiet").status == 0
-    assert names(".") == {"results.json", "moment-curvature.csv", "moment-rotation.csv"}
+    assert names(".") == {"results.json", "report.html", "moment-curvature.csv", "moment-rotation.csv"}
 
 
 def test_a_file_where_a_folder_is_wanted(capsys: pytest.CaptureFixture[str]) -> None:
@@ -525,7 +525,7 @@ def test_a_folder_under_a_read_only_one(capsys: pytest.CaptureFixture[str]) -> N
     Path("p").chmod(0o555)
     try:
         assert traced(capsys, "--out", "p/q", "--no-figures") == 0
-        assert names("p/q") == {"results.json", "moment-curvature.csv", "moment-rotation.csv"}
+        assert names("p/q") == {"results.json", "report.html", "moment-curvature.csv", "moment-rotation.csv"}
         assert traced(capsys, "--out", "p/q", "--no-figures") == 0
     finally:
         Path("p").chmod(0o755)

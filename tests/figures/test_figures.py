@@ -10,7 +10,7 @@ from matplotlib.axes import Axes
 from matplotlib.axis import Axis
 from matplotlib.figure import Figure
 
-from fibremr import read_case, trace
+from fibremr import justify, read_case, trace
 from fibremr.figures import names
 from fibremr.tracing import TraceResult
 
@@ -135,8 +135,9 @@ def test_text_lies_inside_the_picture() -> None:
     """No word of any picture of the shipped cases is cut off at the edge."""
     from matplotlib.text import Text
 
-    for case in ("deck-beam", "hybrid-girder", "plated-girder", "hand-check-bar"):
-        result = trace(read_case(ROOT / "cases" / f"{case}.toml"))
+    for case in ("deck-beam", "hybrid-girder", "plated-girder", "hand-check-bar", "deck-fins-left-out"):
+        read = read_case(ROOT / "cases" / f"{case}.toml")
+        result = trace(read) if read.beam is None else justify(read)
         for name in names(result):
             figure = result.figure(name)
             figure.canvas.draw()
@@ -167,3 +168,29 @@ def test_shipped_pictures_are_those_of_the_shipped_cases(tmp_path: Path) -> None
     made = {str(p.relative_to(tmp_path)) for p in tmp_path.rglob("*.png")}
     there = {str(p.relative_to(ROOT / "figures")) for p in (ROOT / "figures").rglob("*.png")}
     assert made == there
+
+
+def test_beam_pictures() -> None:
+    result = justify(read_case(ROOT / "cases" / "deck-three-supports.toml"))
+    figure = result.figure("beam")
+    axes = figure.axes[1]
+    x, y = line(axes, "by the law of the case")
+    np.testing.assert_allclose(x, result.columns()["x_m"])
+    np.testing.assert_allclose(y, result.columns()["moment_kNm"])
+    _, elastic = line(axes, "elastic beam")
+    assert elastic.min() == pytest.approx(-752.0, abs=0.1)
+    text = words(figure)
+    for word in (
+        "94 kN/m",
+        "Mp hogging",
+        "restraints: top continuously, bottom every 2 m",
+        "justified",
+        "[kNm]",
+    ):
+        assert word in text
+    ladder = words(result.figure("ladder"))
+    for word in ("0.708", "0.835", "1.171", "asked for", "simple plastic collapse"):
+        assert word in ladder
+    hinges = result.figure("hinges")
+    widths = sorted(round(p.get_width(), 2) for p in hinges.axes[0].patches)
+    assert widths == pytest.approx([9.60, 11.13, 39.11], abs=0.02)
