@@ -275,13 +275,15 @@ def _curve(case: Case, sense: int, *, plastic: bool) -> Curve:
         bar = replace(bar, laws=tuple(Bilinear(law.modulus, law.yield_stress) for law in bar.laws))
     residual = bar.residual(case.pattern, case.scale) if case.pattern else None
     ei = bar.elastic.bending
-    stops = [
-        bar.first_yield_curvature(residual),
-        bar.yield_moment / ei,
-        bar.unit_curvature,
-        FAR * bar.unit_curvature,
-    ]
+    stops = [bar.first_yield_curvature(residual), bar.yield_moment / ei, bar.unit_curvature, _far(case, bar)]
     return trace_curve(bar, residual, stops=stops)
+
+
+def _far(case: Case, bar: Bar) -> float:
+    """Curvature to which the section's curve is laid out [1/mm], past a strain limit of the user's own."""
+    g = bar.geometry
+    strain = 1.5 * (case.limits.strain or 0.0) / min(g.top - g.centroid, g.centroid - g.bottom)
+    return max(FAR * bar.unit_curvature, strain)
 
 
 def _curves(case: Case, *, traced: Curve | None = None, plastic: bool = False) -> dict[int, Curve]:
@@ -290,7 +292,7 @@ def _curves(case: Case, *, traced: Curve | None = None, plastic: bool = False) -
     `traced` is one that is there already, and is gone on with.
     """
     if traced is not None and traced.bar.sense == 1:
-        sagging = extended(traced, [FAR * traced.bar.unit_curvature])
+        sagging = extended(traced, [_far(case, traced.bar)])
     else:
         sagging = _curve(case, 1, plastic=plastic)
     shape = case.section.shape

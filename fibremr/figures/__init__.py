@@ -74,4 +74,4 @@ def save(figure: Figure, file: Path) -> None:
         if file.suffix == ".svg":
             figure.savefig(file, metadata={"Date": None, "Creator": "fibremr"})
         else:
-            figure.savefig(file, dpi=144, metadata={"Software": "fibremr"}, pil_kwargs={"compress_level": 3})
+            figure.savefig(file, dpi=125, metadata={"Software": "fibremr"}, pil_kwargs={"compress_level": 3})

@@ -20,7 +20,8 @@ sys.path[:0] = [str(ROOT), str(ROOT / "tests")]
 
 import builders  # noqa: E402
 
-from fibremr import read_case, trace  # noqa: E402
+from fibremr import justify, read_case, trace  # noqa: E402
+from fibremr.beam.solve import solve  # noqa: E402
 from fibremr.bending import fibres, trace_curve  # noqa: E402
 from fibremr.residual import EccsRolled  # noqa: E402
 from fibremr.section.catalogue import profile  # noqa: E402
@@ -74,11 +75,18 @@ def main(repeats: int) -> None:
     )
     case = str(ROOT / "cases" / "deck-beam.toml")
     read = read_case(case)
+    deck = str(ROOT / "cases" / "deck-three-supports.toml")
+    beam_case = read_case(deck)
+    judged = justify(beam_case)
+    twice = ("justify", deck, "--no-figures", "--out", "/tmp/fibremr-bench-beam")
     rows = [
         ("yardstick: 200 passes over the fibres", yardstick, repeats),
         ("curve, plastic, 20 Mp/(EI)", lambda: trace_curve(plastic, None, stops=end), repeats),
         ("curve, quad-linear, N, ECCS", lambda: trace_curve(quad, residual, stops=quad_end), repeats),
         ("trace of the deck beam, warm", lambda: trace(read), repeats),
+        ("one solve of two spans", lambda: solve(judged.stations, judged.response, 1.0), repeats),
+        ("justify of two spans, warm", lambda: justify(beam_case), repeats),
+        ("fibremr justify --no-figures, cold", cold(*twice), repeats),
         ("python -c pass", lambda: subprocess.run([sys.executable, "-c", "pass"], check=True), repeats),
         ("fibremr --help, cold", cold("--help"), repeats),
         ("fibremr trace --no-figures, cold", cold(*pictureless), repeats),
