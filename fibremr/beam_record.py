@@ -4,10 +4,11 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
-from fibremr import code_line
+from fibremr.beam.effects import reactions
 
 if TYPE_CHECKING:
-    from fibremr.justification import HingeVerdict, JustifyResult
+    from fibremr.hinge_verdict import HingeVerdict
+    from fibremr.justification import JustifyResult
 
 
 def beam_record(result: JustifyResult) -> dict[str, Any]:
@@ -57,7 +58,7 @@ def beam_record(result: JustifyResult) -> dict[str, Any]:
             "verdict": deflection.verdict,
         },
         "yields_at_service": None if service is None else service > ladder.first_yield,
-        "reactions_kN": [r / 1e3 for r in code_line.reactions(result.shown)],
+        "reactions_kN": [r / 1e3 for r in reactions(result.shown)],
         "arrangements": [],
         "sensitivity": [],
         "verdict": result.verdict,
@@ -106,7 +107,7 @@ def where(h: HingeVerdict) -> str:
 def mechanism_words(result: JustifyResult) -> str:
     """The mechanism of simple plastic collapse in words."""
     simple = result.simple
-    places = ", ".join(f"{x / 1e3:.2f} m ({_sense(s)})" for x, s in simple.hinges)
+    places = ", ".join(f"{result.case.system.place(x)} ({_sense(s)})" for x, s in simple.hinges)
     name = "several spans together" if simple.span is None else f"span {simple.span + 1}"
     return f"{name}: hinges at {places}"
 

@@ -6,11 +6,14 @@ from textwrap import wrap
 from typing import TYPE_CHECKING
 
 from fibremr import code_line
+from fibremr.beam.effects import reactions
 from fibremr.beam_record import mechanism_words, where
 from fibremr.summary import CAUTION, WIDTH, labelled, number, typed
 
 if TYPE_CHECKING:
-    from fibremr.justification import HingeVerdict, JustifyResult
+    from fibremr.case.units import System
+    from fibremr.hinge_verdict import HingeVerdict
+    from fibremr.justification import JustifyResult
 
 
 def justify_summary(result: JustifyResult, *, where: str = "") -> str:
@@ -27,14 +30,14 @@ def justify_summary(result: JustifyResult, *, where: str = "") -> str:
         lines += labelled("Hinges", f"none at load factor {number(result.shown.factor, 3)}")
     for h in result.hinges:
         lines += labelled("Hinge", hinge_words(result, h))
-    lines += labelled("Checks", "; ".join(_check(c) for c in result.checks))
+    lines += labelled("Checks", "; ".join(_check(c, s) for c in result.checks))
     unknown = [c.check for c in result.checks if c.verdict == code_line.UNKNOWN]
     if unknown:
         lines += labelled("To be shown", f"{', '.join(unknown)}: not known from the case or its table")
     if (deflection := deflection_words(result)) is not None:
         lines += labelled("Deflection", deflection)
-    reactions = ", ".join(number(s.show(r, "force")) for r in code_line.reactions(result.shown))
-    lines += labelled("Reactions", f"{reactions} {s.force}; {redistribution_words(result)}")
+    forces = ", ".join(number(s.show(r, "force")) for r in reactions(result.shown))
+    lines += labelled("Reactions", f"{forces} {s.force}; {redistribution_words(result)}")
     lines += labelled("Section", f"{result.section.record.section.name}; {case.base.source}")
     held = f"top flange held {result.beam.top.words}, bottom flange {result.beam.bottom.words}"
     lines += labelled("Restraints", held)
@@ -57,7 +60,7 @@ def justify_summary(result: JustifyResult, *, where: str = "") -> str:
 
 def reason(result: JustifyResult) -> str:
     """The one reason to say first."""
-    from fibremr.justification import JUSTIFIED, NOT
+    from fibremr.hinge_verdict import JUSTIFIED, NOT
 
     failed = [c for c in result.checks if c.verdict == code_line.FAILS]
     outside = [c for c in result.checks if c.verdict == code_line.OUTSIDE]
@@ -65,7 +68,7 @@ def reason(result: JustifyResult) -> str:
         return f"{result.rotation_why}."
     if failed or outside:
         c = (failed or outside)[0]
-        place = "" if c.at is None else f" at {c.at / 1e3:.2f} m"
+        place = "" if c.at is None else f" at {result.case.system.place(c.at)}"
         return f"{c.check}{place}: {c.value}; allowed {c.allowed}."
     if result.verdict == JUSTIFIED:
         return f"{result.rotation_why}, and every check of the code line passes."
@@ -93,7 +96,7 @@ def hinge_words(result: JustifyResult, h: HingeVerdict) -> str:
     s, hinge = result.case.system, h.hinge
     moment = number(s.show(hinge.sense * hinge.moment, "moment"))
     sense = "sagging" if hinge.sense > 0 else "hogging"
-    text = f"at {hinge.at / 1e3:.2f} m ({where(h)}), {sense}: {moment} {s.moment}"
+    text = f"at {s.place(hinge.at)} ({where(h)}), {sense}: {moment} {s.moment}"
     needs = "more than the beam can give" if h.required is None else f"{1e3 * h.required:.2f} mrad"
     text += f", needs {needs}"
     if h.governing is not None and h.governing.rotation is not None:
@@ -135,8 +138,8 @@ def _count(result: JustifyResult) -> str:
     )
 
 
-def _check(c: code_line.Check) -> str:
-    place = "" if c.at is None else f" at {c.at / 1e3:.2f} m"
+def _check(c: code_line.Check, s: System) -> str:
+    place = "" if c.at is None else f" at {s.place(c.at)}"
     verdict = c.verdict.upper() if c.verdict == code_line.FAILS else c.verdict
     if c.verdict == code_line.OK:
         return f"{c.check}{place} {c.value} ok"

@@ -8,6 +8,7 @@ from math import sqrt
 
 import numpy as np
 
+from fibremr.beam.effects import reactions, shear_forces
 from fibremr.beam.hinges import Hinge
 from fibremr.beam.solve import Solution
 from fibremr.case.beam_table import BeamCase, Restraint
@@ -35,15 +36,14 @@ class Check:
 
 def steel_checks(case: Case) -> Iterator[Check]:
     """What plastic analysis asks of the steel."""
-    steel = case.base
+    steel, s = case.base, case.system
     fy, modulus = steel.law.yield_stress, steel.law.modulus
     if not steel.carbon:
         yield Check("steel", None, "not carbon steel", "carbon steel", OUTSIDE, en.STEEL)
         return
-    yield Check(
-        "grade", None, f"{fy:g} MPa", f"up to {en.LARGEST_YIELD:g} MPa",
-        OK if fy <= en.LARGEST_YIELD else OUTSIDE, en.GRADE,
-    )  # fmt: skip
+    strength, most = (f"{s.show(x, 'stress'):.4g} {s.stress}" for x in (fy, en.LARGEST_YIELD))
+    verdict = OK if fy <= en.LARGEST_YIELD else OUTSIDE
+    yield Check("grade", None, strength, f"up to {most}", verdict, en.GRADE)
     if steel.ultimate is None:
         yield Check("steel fu/fy", None, "fu not given", "at least 1.10", UNKNOWN, en.STEEL)
     else:
@@ -129,27 +129,6 @@ def shear_checks(case: Case, solution: Solution, hinges: list[Hinge]) -> Iterato
         )  # fmt: skip
 
 
-def shear_forces(solution: Solution) -> tuple[np.ndarray, np.ndarray]:
-    """Shear just left and just right of every station [N], the slope of the moment."""
-    slope = solution.redundants @ solution.stations.slope
-    return (
-        solution.factor * solution.stations.shear_left + slope,
-        solution.factor * solution.stations.shear_right + slope,
-    )
-
-
-def reactions(solution: Solution) -> list[float]:
-    """Upward reaction at each support [N]."""
-    left, right = shear_forces(solution)
-    starts = solution.stations.starts
-    found = []
-    for support in range(len(starts)):
-        after = right[starts[support]] if support < len(starts) - 1 else 0.0
-        before = left[starts[support] - 1] if support > 0 else 0.0
-        found.append(float(after - before))
-    return found
-
-
 def stiffener_checks(case: Case, beam: BeamCase, solution: Solution, hinges: list[Hinge]) -> Iterator[Check]:
     """Web stiffeners where the transverse force at a hinge asks for them."""
     area = shear_area(case)
@@ -174,7 +153,7 @@ def stiffener_checks(case: Case, beam: BeamCase, solution: Solution, hinges: lis
         value = f"{share:.2f} Vpl, {'stiffened' if beam.stiffeners else 'no stiffeners'}"
         verdict = FAILS if asked and not beam.stiffeners else OK
         yield Check(
-            "stiffeners", hinge.at, value, "above 0.10 Vpl stiffeners within h/2", verdict, en.STIFFENER
+            "stiffeners", hinge.at, value, "up to 0.10 Vpl unless stiffened within h/2", verdict, en.STIFFENER
         )
 
 
@@ -213,14 +192,14 @@ def restraint_checks(case: Case, beam: BeamCase, solution: Solution, hinges: lis
             if found is not None:
                 length, most, straight, needed = found
                 good = length <= most * (1.0 + 1e-9)
-                allowed = f"{most / 1e3:.2f} m"
+                allowed = case.system.place(most)
                 if not good:
-                    allowed += f" there (a restraint at {needed / 1e3:.2f} m would do)"
+                    allowed += f" there (a restraint at {case.system.place(needed)} would do)"
                 if not straight:
                     allowed += "; the rule assumes a straight moment, which this is not"
                 where = "left" if side < 0 else "right"
                 yield Check(
-                    f"restraint {name}, {where} of hinge", hinge.at, f"{length / 1e3:.2f} m", allowed,
+                    f"restraint {name}, {where} of hinge", hinge.at, case.system.place(length), allowed,
                     OK if good else FAILS, en.STABLE_LENGTH,
                 )  # fmt: skip
 

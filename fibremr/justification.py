@@ -10,10 +10,10 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 from numpy.typing import NDArray
 
-from fibremr import available, code_line
-from fibremr.available import at_edge_strain
+from fibremr import code_line
 from fibremr.beam.collapse import Collapse, collapse
-from fibremr.beam.hinges import Hinge, at_region, hinges, scaled_rotation
+from fibremr.beam.effects import deflections, shear_forces
+from fibremr.beam.hinges import Hinge, at_region, hinges
 from fibremr.beam.model import FIXED, Stations, stations
 from fibremr.beam.response import Branch, Response
 from fibremr.beam.solve import Solution, Solver, elastic_redundants, solve
@@ -21,10 +21,9 @@ from fibremr.bending import Bar, Curve, extended, trace_curve
 from fibremr.case.beam_table import BeamCase
 from fibremr.case.records import Case
 from fibremr.case.tables import bar_of
-from fibremr.classes import SectionClass, classify
 from fibremr.code_line import Check
 from fibremr.errors import CaseError, Fault
-from fibremr.limits import class_rotation, own
+from fibremr.hinge_verdict import JUSTIFIED, NOT, OUTSIDE, HingeVerdict, Judge, worse
 from fibremr.residual import EccsRolled
 from fibremr.section.shapes import BoxShape, IShape, RectangleShape, TubeShape
 from fibremr.solve.roots import find_root
@@ -36,7 +35,6 @@ if TYPE_CHECKING:
 
 Array = NDArray[np.float64]
 
-JUSTIFIED, NOT, OUTSIDE = "justified", "not justified", "outside the methods"
 FAR = 60.0  # multiples of Mp/(EI) to which the section's curve is laid out for the beam
 NEAR_MP = 0.999  # share of Mp at which a section of a law without hardening counts as having reached it
 NOT_CHECKED = (
@@ -53,42 +51,6 @@ ASSUMPTIONS = (
     "design loads and nominal strengths as given, no partial or resistance factor (EN 1993-1-1: 1.0)",
     "self-weight only where it is among the loads",
 )
-
-
-@dataclass(frozen=True)
-class Available:
-    """What a method lets a hinge turn: plastic rotation [rad] or None, R if it gives one, and why not."""
-
-    method: str
-    rotation: float | None
-    capacity: float | None
-    why_not: str = ""
-
-
-@dataclass(frozen=True)
-class HingeVerdict:
-    """A hinge at load factor 1 with what is required [rad] by both laws and what is available."""
-
-    hinge: Hinge
-    case_law: float | None
-    elastic_plastic: float | None
-    classed: SectionClass
-    available: tuple[Available, ...]
-    governing: Available | None
-    verdict: str
-
-    @property
-    def required(self) -> float | None:
-        """The larger of both laws [rad]."""
-        found = [r for r in (self.case_law, self.elastic_plastic) if r is not None]
-        return max(found) if found else None
-
-    @property
-    def use(self) -> float | None:
-        """Required over available."""
-        if self.required is None or self.governing is None or not self.governing.rotation:
-            return None
-        return self.required / self.governing.rotation
 
 
 @dataclass(frozen=True)
@@ -164,7 +126,7 @@ class JustifyResult:
 
     def columns(self) -> dict[str, Array]:
         """beam.csv as a dict of arrays."""
-        left, right = code_line.shear_forces(self.shown)
+        left, right = shear_forces(self.shown)
         size = self.stations.x.size
         first = np.zeros(size, dtype=bool)
         first[list(self.stations.starts[:-1])] = True
@@ -194,12 +156,6 @@ class JustifyResult:
         record["warnings"] = list(dict.fromkeys([*record["warnings"], *self.warnings]))
         record["beam"] = beam_record(self)
         return record
-
-
-def worse(*verdicts: str) -> str:
-    """The worst of some verdicts."""
-    order = (JUSTIFIED, OUTSIDE, NOT)
-    return max(verdicts, key=order.index)
 
 
 def justify(case: Case) -> JustifyResult:
@@ -236,7 +192,7 @@ def justify(case: Case) -> JustifyResult:
         warnings.append(
             f"the loads are not carried: moments and deflections are shown at load factor {factor:.3f}"
         )
-    judge = _Judge(case, curves, bars)
+    judge = Judge(case, curves, bars)
     judged = tuple(
         judge.hinge(shown, plastic_solution, h, reachable)
         for h in _all_hinges(shown, plastic_solution, *plastic)
@@ -346,71 +302,9 @@ def _all_hinges(shown: Solution, other: Solution | None, sagging: float, hogging
     return sorted(found, key=lambda h: h.at)
 
 
-@dataclass(frozen=True)
-class _Judge:
-    """Judges hinges: what each may turn by the methods named."""
-
-    case: Case
-    curves: dict[int, Curve]
-    bars: dict[int, Bar]
-
-    def classed(self, sense: int) -> SectionClass:
-        """Class of the section in a sense."""
-        found = classify(self.bars[sense], self.case.section, minor=self.case.bending.about == "minor")
-        if all(steel.carbon for steel in self.case.steels):
-            return found
-        return SectionClass(found.code, None, (), "its classes are those of carbon steel")
-
-    def hinge(self, shown: Solution, plastic: Solution | None, hinge: Hinge, reachable: bool) -> HingeVerdict:
-        """The verdict on one hinge."""
-        case_law = hinge.required if reachable else None
-        other = None
-        if plastic is not None:
-            mate = hinge if plastic is shown else at_region(plastic, hinge.at, *self._plastic())
-            other = mate.required if mate is not None and mate.sense == hinge.sense else 0.0
-        methods = self._available(shown, hinge)
-        names = available.named(self.case.limits)
-        able = [a for a in methods if a.method in names and a.rotation is not None]
-        governing = min(able, key=lambda a: a.rotation or 0.0) if able else None
-        found = HingeVerdict(hinge, case_law, other, self.classed(hinge.sense), methods, governing, OUTSIDE)
-        if found.required is None:
-            return replace(found, verdict=NOT)
-        if governing is None or governing.rotation is None:
-            return found
-        return replace(found, verdict=JUSTIFIED if found.required <= governing.rotation else NOT)
-
-    def _plastic(self) -> tuple[float, float]:
-        return self.bars[1].plastic.moment, self.bars[-1].plastic.moment
-
-    def _available(self, shown: Solution, hinge: Hinge) -> tuple[Available, ...]:
-        limits, found = self.case.limits, []
-        if limits.strain is not None:
-            state = at_edge_strain(self.curves[hinge.sense], limits.strain)
-            if state is None:
-                found.append(Available(own.STRAIN, None, None, "the curve ends before this strain"))
-            else:
-                moment = self.curves[hinge.sense].event(state).moment
-                found.append(Available(own.STRAIN, scaled_rotation(shown, hinge, moment), None))
-        if limits.rotation_capacity is not None:
-            found.append(self._by_capacity(own.CAPACITY, limits.rotation_capacity, hinge))
-        classed = self.classed(hinge.sense)
-        capacity = class_rotation.capacity(classed.number)
-        if capacity is None:
-            why = classed.why_not or f"the section is of class {classed.number} in this sense"
-            found.append(Available(class_rotation.NAME, None, None, why))
-        else:
-            found.append(self._by_capacity(class_rotation.NAME, capacity, hinge))
-        return tuple(found)
-
-    @staticmethod
-    def _by_capacity(method: str, capacity: float, hinge: Hinge) -> Available:
-        growth = max(hinge.moment, hinge.plastic) / hinge.plastic
-        return Available(method, max(0.0, capacity + 1.0 - growth) * hinge.theta_p, capacity)
-
-
 def _ladder(
     place: Stations, response: Response, ideal: Response, bars: dict[int, Bar], plastic: tuple[float, float],
-    simple: Collapse, most: float, hardens: bool, judge: _Judge,
+    simple: Collapse, most: float, hardens: bool, judge: Judge,
 ) -> Ladder:  # fmt: skip
     residuals = {s: judge.curves[s].residual for s in (1, -1)}
     first_moment = {s: bars[s].first_yield_curvature(residuals[s]) * bars[s].elastic.bending for s in (1, -1)}
@@ -487,14 +381,14 @@ def _code_verdict(checks: tuple[Check, ...]) -> str:
 
 def _rotation_verdict(
     shown: Solution, judged: tuple[HingeVerdict, ...], plastic: tuple[float, float], bars: dict[int, Bar],
-    judge: _Judge, simple: Collapse,
+    judge: Judge, simple: Collapse,
 ) -> tuple[str, str]:  # fmt: skip
     if simple.factor <= 1.0:
         return NOT, f"the loads reach simple plastic collapse at load factor {simple.factor:.3f}"
     if judged:
         verdict = worse(*(h.verdict for h in judged))
         worst = max(judged, key=lambda h: (h.verdict == NOT, h.verdict == OUTSIDE, h.use or 0.0))
-        where = f"at {worst.hinge.at / 1e3:.2f} m"
+        where = f"at {judge.case.system.place(worst.hinge.at)}"
         if worst.governing is None or worst.required is None:
             return verdict, f"no method named gives the hinge {where} a rotation"
         text = (
@@ -515,22 +409,6 @@ def _rotation_verdict(
         if peak > allowed:
             return NOT, f"no hinge forms, but the moment exceeds what class {number} allows"
     return JUSTIFIED, "no hinge forms below load factor 1: nothing needs to turn"
-
-
-def deflections(solution: Solution) -> Array:
-    """Deflection at every station [mm], downwards positive, zero at the supports."""
-    st = solution.stations
-    found = np.zeros(st.x.size)
-    for a, b in zip(st.starts, st.starts[1:], strict=False):
-        dx = np.diff(st.x[a:b])
-        turn = solution.rotation[a : b - 1]
-        lever = dx * turn - solution.weighted[a : b - 1]  # the curvature's own sag at the right station
-        inner = solution.turning[a:b].copy()
-        inner[0] = inner[-1] = 0.0  # turning at a support belongs to neither span's inside
-        slope = np.concatenate([[0.0], -np.cumsum(turn + inner[1:])])
-        sag = np.concatenate([[0.0], np.cumsum(slope[:-1] * dx - lever)])
-        found[a:b] = sag - sag[-1] * (st.x[a:b] - st.x[a]) / (st.x[b - 1] - st.x[a])
-    return found
 
 
 def _deflection(beam: BeamCase, place: Stations, response: Response, most: float) -> Deflection | None:

@@ -93,7 +93,8 @@ def justify_report(result: JustifyResult, pictures: Mapping[str, str]) -> str:
 
 
 def _beam_parts(result: JustifyResult, pictures: Mapping[str, str]) -> Iterator[Part]:
-    from fibremr import beam_summary, code_line
+    from fibremr import beam_summary
+    from fibremr.beam.effects import reactions
     from fibremr.beam_record import mechanism_words, where
 
     s = result.case.system
@@ -105,7 +106,7 @@ def _beam_parts(result: JustifyResult, pictures: Mapping[str, str]) -> Iterator[
     ]
     if (deflection := beam_summary.deflection_words(result)) is not None:
         texts.append(f"Deflection: {deflection}.")
-    forces = ", ".join(summary.number(s.show(f, "force")) for f in code_line.reactions(result.shown))
+    forces = ", ".join(summary.number(s.show(f, "force")) for f in reactions(result.shown))
     texts.append(f"Reactions: {forces} {s.force}.")
     yield Part("Beam", tuple(texts), pictures=_shown(pictures, "beam", "ladder"))
     head = ("hinge", "sense", f"moment {s.moment}", "theta_p mrad", "required mrad, law of the case",
@@ -115,7 +116,7 @@ def _beam_parts(result: JustifyResult, pictures: Mapping[str, str]) -> Iterator[
         hinge = h.hinge
         rows.append(
             (
-                f"{hinge.at / 1e3:.2f} m, {where(h)}",
+                f"{s.place(hinge.at)}, {where(h)}",
                 "sagging" if hinge.sense > 0 else "hogging",
                 summary.number(s.show(hinge.sense * hinge.moment, "moment")),
                 f"{1e3 * hinge.theta_p:.2f}",
@@ -131,7 +132,7 @@ def _beam_parts(result: JustifyResult, pictures: Mapping[str, str]) -> Iterator[
     yield Part("Hinges", none, tuple(rows) if result.hinges else (), _shown(pictures, "hinges"))
     checks = [("check", "at", "value", "allowed", "verdict", "source")]
     checks += [
-        (c.check, "" if c.at is None else f"{c.at / 1e3:.2f} m", c.value, c.allowed, c.verdict, c.source)
+        (c.check, "" if c.at is None else s.place(c.at), c.value, c.allowed, c.verdict, c.source)
         for c in result.checks
     ]
     yield Part("Checks of the code line", (), tuple(checks))

@@ -208,6 +208,10 @@ class System:
         }[what]  # fmt: skip
         return float(value / table[unit])
 
+    def place(self, x: float) -> str:
+        """A place along a beam, or a length of it [mm], in words."""
+        return f"{self.show(x, 'span'):.2f} {self.span}"
+
 
 SYSTEMS = {
     "SI": System("SI", "mm", "m", "kN", "MPa", "kNm", "1/m", "kN/m"),

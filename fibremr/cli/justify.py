@@ -31,7 +31,7 @@ def justify(
     from dataclasses import replace
 
     from fibremr import output, report
-    from fibremr.justification import JUSTIFIED
+    from fibremr.hinge_verdict import JUSTIFIED
     from fibremr.justification import justify as run
 
     read = load(case, settings)

@@ -38,10 +38,10 @@ def beam(result: JustifyResult) -> Figure:
             text, (1.0, sign * mp * per_m), xycoords=("axes fraction", "data"), fontsize=7.5, color=GREY,
             ha="right", va="bottom" if sign < 0 else "top",
         )  # fmt: skip
-    axes.plot(x, elastic, color=RUST, linewidth=1.1, linestyle=(0, (5, 2)), label="elastic beam")
     axes.plot(
         x, moment, color=INK, linewidth=1.7, label=f"by the law of the case, {result.case.base.law.name}"
     )
+    axes.plot(x, elastic, color=RUST, linewidth=1.1, linestyle=(0, (5, 2)), label="elastic beam")
     stiffness = result.response.stiffness
     plastic = np.abs(result.shown.curvature - result.shown.moment / stiffness)
     yielded = plastic > 1e-3 * np.abs(result.plastic[0] / stiffness)
@@ -91,7 +91,11 @@ def _elevation(axes: Axes, result: JustifyResult, per_x: float) -> None:
             right = left + size * per_x
             axes.fill_between([left, right], 0.18, 0.55, facecolor=PALE, edgecolor=GREY, linewidth=0.6)
             text = f"{typed(round(s.show(uniform, 'line_load'), 6))} {s.line_load}"
-            axes.annotate(text, ((left + right) / 2.0, 0.62), fontsize=7.5, ha="center", va="bottom")
+            # where no point load's arrow crosses it
+            arrows = [left + l.at * per_x for l in case.beam.loads if l.span == span and l.point] or [left]
+            free = [left + share * (right - left) for share in (0.5, 0.25, 0.75)]
+            middle = max(free, key=lambda x: min(abs(x - arrow) for arrow in arrows))
+            axes.annotate(text, (middle, 0.62), fontsize=7.5, ha="center", va="bottom")
         for load in case.beam.loads:
             if load.span == span and load.point:
                 x = left + load.at * per_x
@@ -185,7 +189,7 @@ def hinges(result: JustifyResult) -> Figure:
         axes.annotate(use, (1.0, y), xycoords=("axes fraction", "data"), fontsize=8, ha="right", va="center")
     axes.set_yticks(
         range(count),
-        [f"{h.hinge.at / 1e3:.2f} m, {where(h)}" for h in reversed(result.hinges)],
+        [f"{result.case.system.place(h.hinge.at)}, {where(h)}" for h in reversed(result.hinges)],
     )
     axes.set_xlim(0.0, 1.22 * max(most, 1e-3))
     axes.set_ylim(-0.6, count - 0.4)

@@ -1,7 +1,7 @@
 """Section classes of EN 1993-1-1:2005, Table 5.2: largest width-to-thickness ratios of classes 1 to 3.
 
 Plain numbers in and out. The ratios for parts in bending, in compression and in both were seen in
-transcriptions of the table; the buckling factors for outstands (EN 1993-1-5:2006 Table 4.2) are from
+copies of the table; the buckling factors for outstands (EN 1993-1-5:2006 Table 4.2) are from
 memory. A limit of infinity means that the table asks for nothing.
 """
 

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import subprocess
 import sys
+import tempfile
 import time
 from collections.abc import Callable
 from pathlib import Path
@@ -16,6 +17,7 @@ from statistics import median
 import numpy as np
 
 ROOT = Path(__file__).resolve().parents[2]
+SCRATCH = tempfile.TemporaryDirectory()
 sys.path[:0] = [str(ROOT), str(ROOT / "tests")]
 
 import builders  # noqa: E402
@@ -44,7 +46,7 @@ def cold(*arguments: str) -> Callable[[], object]:
     """A command in a process of its own."""
     command = [sys.executable, "-m", "fibremr", *arguments]
     return lambda: subprocess.run(
-        command, cwd="/tmp", env={"PYTHONPATH": str(ROOT)}, check=True, capture_output=True
+        command, cwd=SCRATCH.name, env={"PYTHONPATH": str(ROOT)}, check=True, capture_output=True
     )
 
 
@@ -66,19 +68,13 @@ def main(repeats: int) -> None:
 
     end = [20.0 * plastic.unit_curvature]
     quad_end = [20.0 * quad.unit_curvature]
-    pictureless = (
-        "trace",
-        str(ROOT / "cases" / "deck-beam.toml"),
-        "--no-figures",
-        "--out",
-        "/tmp/fibremr-bench",
-    )
     case = str(ROOT / "cases" / "deck-beam.toml")
+    pictureless = ("trace", case, "--no-figures", "--out", "trace")
     read = read_case(case)
     deck = str(ROOT / "cases" / "deck-three-supports.toml")
     beam_case = read_case(deck)
     judged = justify(beam_case)
-    twice = ("justify", deck, "--no-figures", "--out", "/tmp/fibremr-bench-beam")
+    twice = ("justify", deck, "--no-figures", "--out", "justify")
     rows = [
         ("yardstick: 200 passes over the fibres", yardstick, repeats),
         ("curve, plastic, 20 Mp/(EI)", lambda: trace_curve(plastic, None, stops=end), repeats),
@@ -90,7 +86,7 @@ def main(repeats: int) -> None:
         ("python -c pass", lambda: subprocess.run([sys.executable, "-c", "pass"], check=True), repeats),
         ("fibremr --help, cold", cold("--help"), repeats),
         ("fibremr trace --no-figures, cold", cold(*pictureless), repeats),
-        ("fibremr trace, cold", cold("trace", case, "--out", "/tmp/fibremr-bench"), max(3, repeats // 3)),
+        ("fibremr trace, cold", cold("trace", case, "--out", "pictures"), max(3, repeats // 3)),
     ]  # fmt: skip
     base = 0.0
     for name, function, n in rows:

@@ -11,12 +11,12 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from fibremr.beam.collapse import collapse
+from fibremr.beam.effects import reactions
 from fibremr.beam.hinges import hinges
 from fibremr.beam.model import FIXED, PINNED, Beam, Load, stations
 from fibremr.beam.response import Branch, Response
 from fibremr.beam.solve import solve
 from fibremr.bending import trace_curve
-from fibremr.code_line import reactions
 from fibremr.section.catalogue import profile
 from fibremr.steel.bilinear import Bilinear
 from fibremr.steel.quad_linear import QuadLinear

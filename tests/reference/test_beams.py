@@ -12,13 +12,14 @@ import numpy as np
 import pytest
 
 from fibremr.beam.collapse import collapse
+from fibremr.beam.effects import deflections
 from fibremr.beam.hinges import hinges
 from fibremr.beam.model import FIXED, PINNED, Beam, Load, stations
 from fibremr.beam.response import Branch, Response
 from fibremr.beam.solve import elastic_redundants, solve
 from fibremr.bending import trace_curve
 from fibremr.case.reader import parse_case
-from fibremr.justification import JustifyResult, deflections, justify
+from fibremr.justification import JustifyResult, justify
 from fibremr.section import shapes
 from fibremr.section.parts import Section
 from fibremr.steel.bilinear import Bilinear
