@@ -121,9 +121,7 @@ def classify(bar: Bar, section: Section, *, minor: bool) -> SectionClass:
         return SectionClass(en.NAME, part.number, (part,))
     found = flats(section)
     if found is None:
-        return SectionClass(
-            en.NAME, None, (), f"no rule here for the class of this shape ({shapes.describe(section.shape)})"
-        )
+        return SectionClass(en.NAME, None, (), f"no rule here for the class of this shape ({section.name})")
     strength = {p.name: fy for p, fy in zip(section.parts, bar.yields, strict=True)}
     strongest = max(strength.values())
     worst: dict[str, PartClass] = {}

@@ -107,9 +107,7 @@ def section_rows(result: TraceResult) -> list[tuple[str, str]]:
     """What a trace says of the section and its curve, as labels and texts."""
     r, case, say = result.record, result.case, _Words(result.case)
     axial = axial_words(case)
-    rows = [
-        ("Section", f"{r.section.name}, {axis_words(case)}; held sideways{'; ' + axial if axial else ''}")
-    ]
+    rows = [("Section", f"{r.section.name}, {axis_words(case)}{'; ' + axial if axial else ''}")]
     rows.append(("Steel", _steel(result)))
     if r.residual is not None:
         rows.append(("Residual", _residual(result)))

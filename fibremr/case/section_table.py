@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping
 
 from fibremr.case.table import Table
+from fibremr.case.units import LENGTH, System
 from fibremr.errors import ValueFault
 from fibremr.section import shapes
 from fibremr.section.catalogue import find
@@ -17,8 +18,8 @@ _LATER_SHAPES = ("round", "plates", "outline")
 _LATER_SECTION_KEYS = ("plate", "add", "opening")
 
 
-def read_section(table: Table) -> Section | None:
-    """The section of a case, or None after a fault."""
+def read_section(table: Table, system: System) -> Section | None:
+    """The section of a case, named in the units asked for, or None after a fault."""
     table.refuse_later(_LATER_SECTION_KEYS)
     by_profile, by_shape = table.has("profile"), table.has("shape")
     if by_profile and by_shape:
@@ -62,7 +63,8 @@ def read_section(table: Table) -> Section | None:
         table.fail(_written(fault.key, table), fault)
     if found:
         return None
-    return shapes.build(shape, source="dimensions given in the case")
+    name = shapes.describe(shape, system.length, LENGTH[system.length])
+    return shapes.build(shape, name=name, source="dimensions given in the case")
 
 
 def _written(key: str, table: Table) -> str:

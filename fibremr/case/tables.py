@@ -31,13 +31,13 @@ def read_tables(root: Table, *, file: str, sha256: str) -> Case | None:
     """The case of a whole file, or None after a fault; the faults are with the tables' notes."""
     notes = root.notes
     title = root.text("title", default=PurePath(file).stem if file != "-" else "case")
-    units = root.choice("units", tuple(SYSTEMS), default="SI")
+    system = SYSTEMS[root.choice("units", tuple(SYSTEMS), default="SI") or "SI"]
     for name in OTHER_TABLES:
         root.has(name)
     section_table = root.table(
         "section", required=True, kind='a table [section], such as profile = "IPE 450"'
     )
-    section = read_section(section_table) if section_table else None
+    section = read_section(section_table, system) if section_table else None
     steel_table = root.table("steel", required=True, kind='a table [steel], such as grade = "S355"')
     limits_table = root.table("limits") or Table(notes, ("limits",), {})
     limits = _limits(limits_table)
@@ -64,7 +64,7 @@ def read_tables(root: Table, *, file: str, sha256: str) -> Case | None:
         file=file,
         sha256=sha256,
         title=title or "",
-        system=SYSTEMS[units or "SI"],
+        system=system,
         section=section,
         steels=per_part,
         base=base,
@@ -320,7 +320,10 @@ def _limits(table: Table) -> Limits | None:
             "default",
         )
         methods = ["class rotation"] if strain is None and capacity is None else []
-    table.number("resistance_factor", least=0.0, above=True, most=1.0)
+    if table.number("resistance_factor", least=0.0, above=True, most=1.0) not in (None, 1.0):
+        only = "1.0, that of EN 1993-1-1"
+        fault = ValueFault("not available in this version", allowed=only, code="not-available")
+        table.fail("resistance_factor", fault)
     table.finish()
     if code is None:
         return None

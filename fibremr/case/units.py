@@ -172,16 +172,17 @@ def _unknown_unit(unit: str, of: Kind) -> ValueFault:
 def fraction_of(text: object, symbol: str) -> float | None:
     """The n of a text such as "E/100" or "L/360", or None if it is not of that form.
 
-    Raises ValueFault when the divisor is not a number above one.
+    Raises ValueFault when the divisor is not a number above one, or divides something else.
     """
-    if not isinstance(text, str):
+    match = re.fullmatch(r"\s*([A-Za-z]+)\s*/\s*(\S+)\s*", text) if isinstance(text, str) else None
+    if not match or (match[1] != symbol and not _NUMBER.fullmatch(match[2])):
         return None
-    match = re.fullmatch(rf"\s*{symbol}\s*/\s*(\S+)\s*", text)
-    if not match:
-        return None
-    if not _NUMBER.fullmatch(match[1]) or not 1.0 < float(match[1]) < 1e9:
+    if match[1] != symbol:
+        hint = f'write "{symbol}/{match[2]}"'
+        raise ValueFault(f'"{match[1]}" divided by a number', allowed=f"a share of {symbol}", suggestion=hint)
+    if not _NUMBER.fullmatch(match[2]) or not 1.0 < float(match[2]) < 1e9:
         raise ValueFault(f"{symbol} is to be divided by a number above 1", allowed=f'such as "{symbol}/100"')
-    return float(match[1])
+    return float(match[2])
 
 
 @dataclass(frozen=True)

@@ -245,24 +245,26 @@ def _root_faults(radius: float, outstand: float) -> Iterator[ValueFault]:
         )
 
 
-def describe(shape: Shape) -> str:
-    """A shape and its dimensions in words."""
+def describe(shape: Shape, unit: str = "mm", size: float = 1.0) -> str:
+    """A shape and its dimensions in words, in a unit of `size` mm."""
+    lengths: tuple[float, ...]
     match shape:
         case IShape():
             kind = "I" if shape.symmetric else "I, unequal flanges,"
-            return f"{kind} {shape.height:g} x {shape.top_flange.width:g} mm"
+            lengths = (shape.height, shape.top_flange.width)
         case TShape():
-            return f"T {shape.height:g} x {shape.flange.width:g} mm"
+            kind, lengths = "T", (shape.height, shape.flange.width)
         case ChannelShape():
-            return f"channel {shape.height:g} x {shape.flange.width:g} mm"
+            kind, lengths = "channel", (shape.height, shape.flange.width)
         case AngleShape():
-            return f"angle {shape.height:g} x {shape.width:g} x {shape.thickness:g} mm"
+            kind, lengths = "angle", (shape.height, shape.width, shape.thickness)
         case BoxShape():
-            return f"box {shape.height:g} x {shape.width:g} mm"
+            kind, lengths = "box", (shape.height, shape.width)
         case TubeShape():
-            return f"tube {shape.diameter:g} x {shape.thickness:g} mm"
+            kind, lengths = "tube", (shape.diameter, shape.thickness)
         case RectangleShape():
-            return f"rectangle {shape.width:g} x {shape.height:g} mm"
+            kind, lengths = "rectangle", (shape.width, shape.height)
+    return f"{kind} {' x '.join(f'{round(x / size, 3):g}' for x in lengths)} {unit}"
 
 
 def _i_parts(s: IShape) -> Iterator[Part]:

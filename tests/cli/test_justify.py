@@ -216,6 +216,8 @@ def test_justify_without_figures_imports_no_matplotlib(tmp_path: Path) -> None:
         (['beam.ends=["pinned"]'], "beam.ends", "type"),
         (['beam.ends=["pinned", "free"]'], "beam.ends[1]", "not-available"),
         (['beam.ends=["pined", "fixed"]'], "beam.ends[0]", "unknown-name"),
+        (["limits.resistance_factor=0.9"], "limits.resistance_factor", "not-available"),
+        (['beam.deflection_limit="span/360"'], "beam.deflection_limit", "value"),
         (["beam.loads=[]"], "beam.loads", "type"),
         (['beam.loads=[{span=3, uniform="5 kN/m"}]'], "beam.loads[0].span", "range"),
         (['beam.loads=[{span=1, uniform="5 kN"}]'], "beam.loads[0].uniform", "unit-kind"),
@@ -266,3 +268,12 @@ def test_a_case_without_a_beam(capsys: pytest.CaptureFixture[str]) -> None:
 def test_new_for_justify_runs(capsys: pytest.CaptureFixture[str]) -> None:
     assert run(capsys, "new", "b.toml", "--for", "justify").status == 0
     assert run(capsys, "justify", "b.toml", "--no-figures", "--strict", "--quiet").status == 0
+
+
+def test_units_of_the_trade_overseas(capsys: pytest.CaptureFixture[str]) -> None:
+    """With units = "US" no metric unit is left but in the user's own words and in the sources."""
+    for command, case in (("justify", DECK), ("trace", ROOT / "cases" / "plated-girder.toml")):
+        out = run(capsys, command, case, "--set", "units=US", "--no-figures").out
+        ours = re.sub(r"sections and plates, up to 40 mm|flange every \S+ m", "", " ".join(out.split()))
+        assert re.findall(r"\S+ (?:m|mm|MPa|kN|kNm)\b", ours) == []
+        assert re.search(r"[0-9] kip\b", ours)

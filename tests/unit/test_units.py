@@ -70,7 +70,8 @@ def test_fraction() -> None:
     assert fraction_of("E/100", "E") == 100.0
     assert fraction_of(" L / 360 ", "L") == 360.0
     assert fraction_of("2.1 GPa", "E") is None
-    for bad in ("E/0", "E/x", "E/1", "E/-5", "E/inf", "E/nan"):
+    assert fraction_of("2.1 kN/mm2", "E") is None
+    for bad in ("G/100", "E/0", "E/x", "E/1", "E/-5", "E/inf", "E/nan"):
         with pytest.raises(ValueFault):
             fraction_of(bad, "E")
 
@@ -80,3 +81,5 @@ def test_showing() -> None:
     assert us.show(1355817.948, "moment") == pytest.approx(1.0)
     assert us.show(1.0 / 25.4, "curvature") == pytest.approx(1.0)
     assert SYSTEMS["SI"].show(1e-6, "curvature") == pytest.approx(1e-3)
+    assert us.place(3048.0) == "10.00 ft"
+    assert SYSTEMS["SI"].place(3048.0) == "3.05 m"
