@@ -69,7 +69,8 @@ def reason(result: JustifyResult) -> str:
     if failed or outside:
         c = (failed or outside)[0]
         place = "" if c.at is None else f" at {result.case.system.place(c.at)}"
-        return f"{c.check}{place}: {c.value}; allowed {c.allowed}."
+        allowed = f"; allowed {c.allowed}" if c.allowed else ""
+        return f"{c.check}{place}: {c.value}{allowed}."
     if result.verdict == JUSTIFIED:
         return f"{result.rotation_why}, and every check of the code line passes."
     return f"{result.rotation_why}."
@@ -129,13 +130,17 @@ def redistribution_words(result: JustifyResult) -> str:
 
 
 def _count(result: JustifyResult) -> str:
-    failed = sum(c.verdict == code_line.FAILS for c in result.checks)
-    total = len(result.checks)
-    return (
-        f"{total} checks, all pass"
-        if not failed
-        else f"{failed} of {total} checks {'fails' if failed == 1 else 'fail'}"
-    )
+    verdicts = [c.verdict for c in result.checks]
+    parts = [
+        f"{n} {words if n == 1 else several}"
+        for verdict, words, several in (
+            (code_line.FAILS, "fails", "fail"),
+            (code_line.OUTSIDE, "is outside the methods", "are outside the methods"),
+            (code_line.UNKNOWN, "is not known", "are not known"),
+        )
+        if (n := verdicts.count(verdict))
+    ]
+    return f"{len(verdicts)} checks: {', '.join(parts) or 'all pass'}"
 
 
 def _check(c: code_line.Check, s: System) -> str:
@@ -143,4 +148,5 @@ def _check(c: code_line.Check, s: System) -> str:
     verdict = c.verdict.upper() if c.verdict == code_line.FAILS else c.verdict
     if c.verdict == code_line.OK:
         return f"{c.check}{place} {c.value} ok"
-    return f"{c.check}{place} {c.value}, allowed {c.allowed}: {verdict}"
+    allowed = f", allowed {c.allowed}" if c.allowed else ""
+    return f"{c.check}{place} {c.value}{allowed}: {verdict}"

@@ -11,8 +11,7 @@ import numpy as np
 from fibremr.bending import Bar, Curve, trace_curve
 from fibremr.residual import Pattern, Residual
 from fibremr.section import shapes
-from fibremr.section.outline import Outline
-from fibremr.section.parts import Part, Region, Section, ring
+from fibremr.section.parts import Section
 from fibremr.steel.bilinear import Bilinear
 from fibremr.steel.law import Law
 
@@ -23,17 +22,16 @@ def section_of(kind: dict[str, Any]) -> Section:
         case "rectangle":
             return shapes.build(shapes.RectangleShape(kind["b"], kind["h"]))
         case "round":
-            r = kind["D"] / 2.0
-            return _region("round", ring(0.0, r, (0.0, r)), kind["D"])
+            return shapes.build(shapes.RoundShape(kind["D"]))
         case "tube":
             return shapes.build(shapes.TubeShape(kind["D"], kind["t"]))
         case "diamond":
             d = kind["side"] * 2.0**0.5
-            corners = [(0.0, 0.0), (d / 2, d / 2), (0.0, d), (-d / 2, d / 2)]
-            return _region("diamond", Region(Outline.polygon(corners)), d)
+            corners = ((0.0, 0.0), (d / 2, d / 2), (0.0, d), (-d / 2, d / 2))
+            return shapes.build(shapes.OutlineShape(corners))
         case "triangle":
             b, h = kind["b"], kind["h"]
-            return _region("triangle", Region(Outline.polygon([(-b / 2, 0.0), (b / 2, 0.0), (0.0, h)])), h)
+            return shapes.build(shapes.OutlineShape(((-b / 2, 0.0), (b / 2, 0.0), (0.0, h))))
         case "box":
             wall = shapes.Web(kind["t"])
             return shapes.build(shapes.BoxShape(kind["h"], kind["b"], wall, wall))
@@ -47,11 +45,6 @@ def section_of(kind: dict[str, Any]) -> Section:
                 shapes.IShape(kind["h"], shapes.Web(kind["tw"]), top, bottom, kind.get("r", 0.0))
             )
     raise KeyError(kind["kind"])
-
-
-def _region(name: str, body: Region, thickness: float) -> Section:
-    shape = shapes.RectangleShape(thickness, thickness)
-    return Section(name, (Part("bar", body, thickness),), shape, True, "test")
 
 
 def bar(

@@ -4,17 +4,16 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 
-from fibremr.case.table import Table
-from fibremr.case.units import LENGTH, System
+from fibremr.case.table import Path, Table
+from fibremr.case.units import LENGTH, System, quantity
 from fibremr.errors import ValueFault
-from fibremr.section import shapes
+from fibremr.section import drawn, shapes
 from fibremr.section.catalogue import find
 from fibremr.section.parts import Section
 
 _SIZES = ("height", "width", "thickness", "diameter", "root_radius", "corner_radius")
 _FLANGES = ("flange", "top_flange", "bottom_flange", "web")
-_SHAPES = ("I", "T", "channel", "angle", "box", "tube", "rectangle")
-_LATER_SHAPES = ("round", "plates", "outline")
+_SHAPES = ("I", "T", "channel", "angle", "box", "tube", "rectangle", "round", "plates", "outline")
 _LATER_SECTION_KEYS = ("plate", "add", "opening")
 
 
@@ -48,9 +47,7 @@ def read_section(table: Table, system: System) -> Section | None:
         )
         shape_name = None
     else:
-        shape_name = table.choice("shape", _SHAPES, later=_LATER_SHAPES)
-        if table.data["shape"] in _LATER_SHAPES:
-            return None  # its keys are those of a later version
+        shape_name = table.choice("shape", _SHAPES)
     if shape_name is None:
         _any_sizes(table)
         return None
@@ -211,7 +208,89 @@ def _rectangle(table: Table) -> shapes.Shape | None:
     return None if width is None or height is None else shapes.RectangleShape(width, height)
 
 
+def _round(table: Table) -> shapes.Shape | None:
+    diameter = table.quantity("diameter", "length", required=True)
+    return None if diameter is None else drawn.RoundShape(diameter)
+
+
+def _plates(table: Table) -> shapes.Shape | None:
+    kind = '[ { width = "200 mm", thickness = "12 mm", centre = ["0 mm", "100 mm"] }, ... ]'
+    items = table.tables("part", kind=kind)
+    if items is None:
+        if "part" not in table.data:
+            table.fail("part", ValueFault("missing", allowed=kind, code="missing"))
+        return None
+    found = []
+    for item in items:
+        width = item.quantity("width", "length", required=True)
+        thickness = item.quantity("thickness", "length", required=True)
+        if not item.has("centre"):
+            item.fail("centre", ValueFault("missing", allowed='["0 mm", "100 mm"]', code="missing"))
+            centre = None
+        else:
+            centre = _point(item, ("centre",), item.data["centre"])
+            item.note("centre")
+        angle = item.quantity("angle", "angle", signed=True, default=0.0, text="0 deg")
+        steel = item.text("steel") if item.has("steel") else ""
+        item.finish()
+        table.sound &= item.sound
+        if width is not None and thickness is not None and centre is not None and angle is not None:
+            found.append(drawn.PlacedPlate(width, thickness, centre, angle, steel or ""))
+    return drawn.PlatesShape(tuple(found)) if len(found) == len(items) else None
+
+
+def _outline(table: Table) -> shapes.Shape | None:
+    points = None
+    if not table.has("points"):
+        kind = '[["0 mm", "0 mm"], ["200 mm", "0 mm"], ...]'
+        table.fail("points", ValueFault("missing", allowed=kind, code="missing"))
+    else:
+        points = _ring(table, ("points",), table.data["points"])
+        table.note("points")
+    holes: list[drawn.Ring | None] = []
+    if table.has("holes"):
+        given = table.data["holes"]
+        if isinstance(given, list):
+            holes = [_ring(table, ("holes", i), hole) for i, hole in enumerate(given)]
+            table.note("holes")
+        else:
+            table.fail("holes", ValueFault("not a list of outlines", allowed="[[[y, z], ...]]", code="type"))
+    kept = [hole for hole in holes if hole is not None]
+    if points is None or len(kept) < len(holes):
+        return None
+    return drawn.OutlineShape(points, tuple(kept))
+
+
+def _ring(table: Table, path: Path, value: object) -> drawn.Ring | None:
+    """The corners of an outline; a last one that repeats the first is left out."""
+    if not isinstance(value, list):
+        table.fail(path, ValueFault("not a list of corners", allowed="[[y, z], ...]", code="type"))
+        return None
+    found = [_point(table, (*path, i), corner) for i, corner in enumerate(value)]
+    corners = [p for p in found if p is not None]
+    if len(corners) < len(found):
+        return None
+    return tuple(corners[:-1] if len(corners) > 1 and corners[0] == corners[-1] else corners)
+
+
+def _point(table: Table, path: Path, value: object) -> tuple[float, float] | None:
+    """A place as [y, z]."""
+    if not isinstance(value, list) or len(value) != 2:
+        table.fail(path, ValueFault("not a place", allowed='[y, z], such as ["0 mm", "100 mm"]', code="type"))
+        return None
+    found = []
+    for i, text in enumerate(value):
+        try:
+            size = quantity(text, "length")
+            if abs(size) > 20e3:
+                raise ValueFault("not a possible place", allowed="up to 20 m from the origin", code="range")
+            found.append(size)
+        except ValueFault as error:
+            table.fail((*path, i), error)
+    return (found[0], found[1]) if len(found) == 2 else None
+
+
 _READERS: Mapping[str, Callable[[Table], shapes.Shape | None]] = {
     "I": _i, "T": _t, "channel": _channel, "angle": _angle, "box": _box, "tube": _tube,
-    "rectangle": _rectangle,
+    "rectangle": _rectangle, "round": _round, "plates": _plates, "outline": _outline,
 }  # fmt: skip

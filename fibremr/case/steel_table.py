@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from fibremr.case.records import Steel
-from fibremr.case.table import Table, dotted
+from fibremr.case.table import Path, Table, dotted
 from fibremr.case.units import fraction_of
 from fibremr.errors import ValueFault, closest
 from fibremr.section import shapes
@@ -89,11 +89,15 @@ def read_steels(
 
 def _check_references(section_table: Table, names: list[str]) -> None:
     """Every `steel = ...` of a part names a table [steel.NAME]."""
+    owners: list[tuple[Path, object]] = []
     for key, value in section_table.data.items():
+        inner = enumerate(value) if isinstance(value, list) else ()
+        owners += [((key,), value), *(((key, i), item) for i, item in inner)]
+    for path, value in owners:
         wanted = value.get("steel") if isinstance(value, dict) else None
         if isinstance(wanted, str) and wanted not in names:
             section_table.fail(
-                (key, "steel"),
+                (*path, "steel"),
                 ValueFault(
                     f"there is no table [steel.{wanted}]",
                     allowed=", ".join(names) or "a table [steel.NAME] of the case",

@@ -15,6 +15,7 @@ from fibremr.case.units import SYSTEMS, quantity, temperature
 from fibremr.errors import ValueFault, closest
 from fibremr.residual import EccsRolled, Pattern, Points, PointStress
 from fibremr.rotation import Setup
+from fibremr.section.drawn import PlatesShape, apart
 from fibremr.section.parts import Section
 from fibremr.section.properties import squash
 
@@ -139,8 +140,12 @@ def _together(case: Case, bending: Table, residual: Table | None) -> None:
     elif lopsided:
         share = abs(geometry.product) / geometry.second_moment
         bending.notes.warnings.append(
-            f"{case.section.name} has no symmetry in or across the plane of bending: it is held sideways, "
+            "the section has no symmetry in or across the plane of bending: it is held sideways, "
             f"which in the elastic range takes a sideways moment of {share:.2f} times the moment shown"
+        )
+    if isinstance(case.section.shape, PlatesShape) and (loose := apart(case.section.shape)):
+        bending.notes.warnings.append(
+            f"plate {', '.join(map(str, loose))} touches no other: all are taken to bend as one section"
         )
     if case.pattern is None or residual is None:
         return

@@ -75,7 +75,7 @@ def quantity(text: object, kind: str) -> float:
         if isinstance(text, int | float) and not isinstance(text, bool):
             a, b = of.examples
             raise ValueFault(
-                f"a {kind} needs its unit",
+                f"{'an' if kind[0] in 'aeiou' else 'a'} {kind} needs its unit",
                 suggestion=f'write "{text} {a}" or "{text} {b}"',
                 code="unit-missing",
             )

@@ -12,6 +12,8 @@ from math import pi
 from typing import TypeAlias
 
 from fibremr.errors import ValueFault
+from fibremr.section import drawn
+from fibremr.section.drawn import OutlineShape, PlatesShape, RoundShape
 from fibremr.section.outline import Line, Outline
 from fibremr.section.parts import Part, Plate, Region, Section, box_corner, corner_reach, fillet, ring
 
@@ -108,7 +110,9 @@ class RectangleShape:
     height: float
 
 
-Shape: TypeAlias = IShape | TShape | ChannelShape | AngleShape | BoxShape | TubeShape | RectangleShape
+Shape: TypeAlias = (
+    IShape | TShape | ChannelShape | AngleShape | BoxShape | TubeShape | RectangleShape | drawn.Drawn
+)
 
 
 def i_section(
@@ -135,8 +139,8 @@ def build(
 ) -> Section:
     """The section of a shape.
 
-    `rolled` says whether it is one piece; without it a section with root or corner radii, a tube and a
-    solid bar are taken as one piece, and any other as welded from plates.
+    `rolled` says whether it is one piece; without it a section with root or corner radii, a tube, a
+    solid bar and an outline are taken as one piece, and any other as welded from plates.
 
     Raises ValueFault (the first of `faults`) for dimensions that cannot be.
     """
@@ -144,7 +148,7 @@ def build(
         raise fault
     parts = tuple(_BUILDERS[type(shape)](shape))
     if rolled is None:
-        rolled = isinstance(shape, TubeShape | RectangleShape) or (
+        rolled = isinstance(shape, TubeShape | RectangleShape | RoundShape | OutlineShape) or (
             getattr(shape, "root_radius", 0.0) > 0.0 or getattr(shape, "corner_radius", 0.0) > 0.0
         )
     return Section(name or describe(shape), parts, shape, rolled, source, mass_kg_per_m)
@@ -204,6 +208,8 @@ def faults(shape: Shape) -> Iterator[ValueFault]:
                 key="corner_radius",
                 allowed=f"up to half the shorter side, {min(shape.width, shape.height) / 2:g} mm",
             )
+    elif isinstance(shape, drawn.Drawn):
+        yield from drawn.faults(shape)
     elif isinstance(shape, TubeShape) and 2.0 * shape.thickness >= shape.diameter:
         yield ValueFault(
             "the wall is thicker than the tube",
@@ -264,6 +270,13 @@ def describe(shape: Shape, unit: str = "mm", size: float = 1.0) -> str:
             kind, lengths = "tube", (shape.diameter, shape.thickness)
         case RectangleShape():
             kind, lengths = "rectangle", (shape.width, shape.height)
+        case RoundShape():
+            kind, lengths = "round bar", (shape.diameter,)
+        case PlatesShape():
+            return f"{len(shape.plates)} plates"
+        case OutlineShape():
+            sides = (max(p[i] for p in shape.points) - min(p[i] for p in shape.points) for i in (0, 1))
+            kind, lengths = "outline", tuple(sides)
     return f"{kind} {' x '.join(f'{round(x / size, 3):g}' for x in lengths)} {unit}"
 
 
@@ -411,4 +424,7 @@ _BUILDERS: dict[type, Callable[..., Iterator[Part]]] = {
     BoxShape: _box_parts,
     TubeShape: _tube_parts,
     RectangleShape: _rectangle_parts,
+    RoundShape: drawn.parts,
+    PlatesShape: drawn.parts,
+    OutlineShape: drawn.parts,
 }

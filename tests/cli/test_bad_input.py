@@ -92,7 +92,7 @@ def flange(thickness: str, more: str) -> str:
         ("title", 'tittle = "a"', "tittle", "unknown-key"),
         ("title", "beem = {}", "beem", "unknown-key"),
         ("shape", 'shape = "H"', "section.shape", "unknown-name"),
-        ("shape", 'shape = "round"', "section.shape", "not-available"),
+        ("shape", 'shape = "round"', "section.diameter", "missing"),
         ("shape", 'profile = "IPE 450"', "section.height", "unknown-key"),
         ("height", 'height = "0 mm"', "section.height", "range"),
         ("height", 'height = "-3 m"', "section.height", "range"),
