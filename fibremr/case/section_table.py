@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
+from functools import partial
 
 from fibremr.case.table import Path, Table
 from fibremr.case.units import LENGTH, System, quantity
@@ -141,28 +142,13 @@ def _i(table: Table) -> shapes.Shape | None:
     return shapes.IShape(height, web, top, bottom, radius)
 
 
-def _t(table: Table) -> shapes.Shape | None:
-    height, web, flange = (
-        table.quantity("height", "length", required=True),
-        _web(table),
-        _flange(table, "flange"),
-    )
+def _t_or_channel(kind: type[shapes.TShape] | type[shapes.ChannelShape], table: Table) -> shapes.Shape | None:
+    height = table.quantity("height", "length", required=True)
+    web, flange = _web(table), _flange(table, "flange")
     radius = _radius(table, "root_radius")
     if height is None or web is None or flange is None:
         return None
-    return shapes.TShape(height, web, flange, radius)
-
-
-def _channel(table: Table) -> shapes.Shape | None:
-    height, web, flange = (
-        table.quantity("height", "length", required=True),
-        _web(table),
-        _flange(table, "flange"),
-    )
-    radius = _radius(table, "root_radius")
-    if height is None or web is None or flange is None:
-        return None
-    return shapes.ChannelShape(height, web, flange, radius)
+    return kind(height, web, flange, radius)
 
 
 def _angle(table: Table) -> shapes.Shape | None:
@@ -291,6 +277,7 @@ def _point(table: Table, path: Path, value: object) -> tuple[float, float] | Non
 
 
 _READERS: Mapping[str, Callable[[Table], shapes.Shape | None]] = {
-    "I": _i, "T": _t, "channel": _channel, "angle": _angle, "box": _box, "tube": _tube,
+    "I": _i, "T": partial(_t_or_channel, shapes.TShape),
+    "channel": partial(_t_or_channel, shapes.ChannelShape), "angle": _angle, "box": _box, "tube": _tube,
     "rectangle": _rectangle, "round": _round, "plates": _plates, "outline": _outline,
 }  # fmt: skip
