@@ -10,7 +10,6 @@ from typing import TYPE_CHECKING
 if TYPE_CHECKING:
     from fibremr.available import Limit
     from fibremr.case.records import Case, Steel
-    from fibremr.section.catalogue import Profile
     from fibremr.tracing import TraceResult
 
 WIDTH = 98
@@ -35,31 +34,38 @@ def typed(value: float) -> str:
     return f"{value:.6g}"
 
 
-class _Words:
+class Words:
     """Values in the units of a case."""
 
     def __init__(self, case: Case) -> None:
         self.system = case.system
 
     def moment(self, kilonewton_metres: float) -> str:
+        """A moment given in kNm."""
         return f"{number(self.system.show(kilonewton_metres * 1e6, 'moment'))} {self.system.moment}"
 
     def curvature(self, per_metre: float) -> str:
+        """A curvature given in 1/m."""
         return f"{number(self.system.show(per_metre / 1e3, 'curvature'))} {self.system.curvature}"
 
     def stress(self, megapascal: float, digits: int = 4) -> str:
+        """A stress given in MPa."""
         return f"{number(self.system.show(megapascal, 'stress'), digits)} {self.system.stress}"
 
     def length(self, millimetres: float) -> str:
+        """A length given in mm."""
         return f"{number(self.system.show(millimetres, 'length'))} {self.system.length}"
 
     def span(self, millimetres: float) -> str:
+        """A span given in mm, as it was typed."""
         return f"{typed(self.system.show(millimetres, 'span'))} {self.system.span}"
 
     def force(self, newton: float) -> str:
+        """A force given in N."""
         return f"{number(self.system.show(newton, 'force'))} {self.system.force}"
 
     def given_force(self, newton: float) -> str:
+        """A force given in N, as it was typed."""
         return f"{typed(self.system.show(newton, 'force'))} {self.system.force}"
 
     def power(self, value: float, exponent: int) -> str:
@@ -84,7 +90,7 @@ def axial_words(case: Case) -> str:
     n = case.bending.axial
     if n == 0.0:
         return ""
-    return f"{_Words(case).given_force(abs(n))} {'compression' if n < 0.0 else 'tension'}"
+    return f"{Words(case).given_force(abs(n))} {'compression' if n < 0.0 else 'tension'}"
 
 
 def trace_summary(result: TraceResult, *, where: str = "") -> str:
@@ -105,7 +111,7 @@ def trace_summary(result: TraceResult, *, where: str = "") -> str:
 
 def section_rows(result: TraceResult) -> list[tuple[str, str]]:
     """What a trace says of the section and its curve, as labels and texts."""
-    r, case, say = result.record, result.case, _Words(result.case)
+    r, case, say = result.record, result.case, Words(result.case)
     axial = axial_words(case)
     rows = [("Section", f"{r.section.name}, {axis_words(case)}{'; ' + axial if axial else ''}")]
     rows.append(("Steel", _steel(result)))
@@ -134,7 +140,7 @@ def section_rows(result: TraceResult) -> list[tuple[str, str]]:
 
 def answer(result: TraceResult) -> str:
     """The headline: yielding, what the moment comes to, and how far it turns."""
-    r, say, governs = result.record, _Words(result.case), result.governs
+    r, say, governs = result.record, Words(result.case), result.governs
     mp, first = r.moments.Mp_kNm, r.moments.first_yield_kNm
     limit = governs.curvature if governs is not None else None
     elastic = limit is not None and 1e3 * limit < r.curvatures.first_yield_per_m
@@ -184,7 +190,7 @@ def _capacity(limit: Limit) -> str:
 
 
 def _steel(result: TraceResult) -> str:
-    case, say = result.case, _Words(result.case)
+    case, say = result.case, Words(result.case)
     text = f"{say.stress(case.base.law.yield_stress)}, {case.base.law.words(say.stress)}; {case.base.source}"
     for names, steel in _special(case).items():
         text += f". {names}: {say.stress(steel.law.yield_stress)}, {steel.source}"
@@ -201,7 +207,7 @@ def _special(case: Case) -> dict[str, Steel]:
 
 
 def _residual(result: TraceResult) -> str:
-    r, say = result.record.residual, _Words(result.case)
+    r, say = result.record.residual, Words(result.case)
     assert r is not None
     scale = "" if r.scale == 1.0 else f" x {typed(r.scale)}"
     return (
@@ -213,7 +219,7 @@ def _residual(result: TraceResult) -> str:
 
 
 def _moment_rows(result: TraceResult) -> list[tuple[str, str]]:
-    r, bar, say = result.record, result.bar, _Words(result.case)
+    r, bar, say = result.record, result.bar, Words(result.case)
     rows = []
     if r.curvatures.first_yield_per_m > 0.0:
         first = f"{say.moment(r.moments.first_yield_kNm)} at {say.curvature(r.curvatures.first_yield_per_m)}"
@@ -338,128 +344,9 @@ def labelled(label: str, text: str) -> list[str]:
     return [f"  {label:<12}{pieces[0]}", *(f"  {'':<12}{p}" for p in pieces[1:])]
 
 
-def read_summary(case: Case) -> str:
-    """A case as understood: every value with where it came from, and what it implies."""
-    from fibremr.case.tables import bar_of
-
-    bar, say = bar_of(case), _Words(case)
-    lines = [*wrap(f"{case.title}: the case as understood", WIDTH), ""]
-    rows = [("key", "value", "where from")]
-    rows += [(e.key, _short(e.value, 44), e.origin) for e in case.entries]
-    lines += [f"  {line}" for line in left_table(rows)]
-    g = bar.geometry
-    up = "the lowest point" if case.bending.about == "major" else "the left edge"
-    upper, lower = ("top", "bottom") if case.bending.about == "major" else ("right", "left")
-    lines += ["", f"  What it implies, bent {axis_words(case)}:"]
-    parts = [("part", "thickness", "yield", "table", "area")]
-    for p, st in zip(case.section.parts, case.steels, strict=True):
-        if not p.joins:
-            table_name = f"steel.{p.steel}" if p.steel else "steel"
-            parts.append(
-                (p.name, say.length(p.thickness), say.stress(st.law.yield_stress), table_name,
-                 say.power(p.moments.area, 2))
-            )  # fmt: skip
-    corners = [p for p in case.section.parts if p.joins]
-    if corners:
-        area = sum(p.moments.area for p in corners)
-        parts.append((f"{len(corners)} fillets or corners", "", "", "", say.power(area, 2)))
-    lines += [f"    {line}" for line in left_table(parts)]
-    implied = [
-        ("law", case.base.law.words(say.stress)),
-        ("area", say.power(g.area, 2)),
-        ("centroid", f"{say.length(g.centroid - g.bottom)} from {up}"),
-        ("second moment", say.power(g.second_moment, 4)),
-        (
-            "elastic moduli",
-            f"{say.power(g.modulus_top, 3)} {upper}, {say.power(g.modulus_bottom, 3)} {lower}",
-        ),
-        (
-            "plastic modulus",
-            f"{say.power(bar.plastic_alone.modulus, 3)}, "
-            f"plastic axis {say.length(bar.plastic_alone.axis - g.bottom)} from {up}",
-        ),
-        ("squash load", say.force(bar.squash)),
-        ("My", say.moment(bar.yield_moment / 1e6)),
-        ("Mp", say.moment(bar.plastic_alone.moment / 1e6)),
-    ]
-    if case.bending.axial:
-        implied.append(("Mp with N", say.moment(bar.plastic.moment / 1e6)))
-    lines += ["", *(f"    {line}" for line in left_table(implied))]
-    if case.setup is not None:
-        lines += ["", *(f"    {line}" for line in wrap(case.setup.definition, WIDTH - 4))]
-    if case.warnings:
-        lines.append("")
-    for warning in case.warnings:
-        lines += labelled("Note", warning)
-    return "\n".join(lines) + "\n"
-
-
-def _short(text: str, most: int) -> str:
-    return text if len(text) <= most else text[: most - 4] + " ..."
-
-
 def limit_line(limit: Limit) -> str:
     """A limit in a few words, for pictures."""
     text = limit.method
     if limit.rotation_capacity is not None and limit.rotation_capacity >= 0.0:
         text += f", R = {number(limit.rotation_capacity, 3)}"
     return text + (", governs" if limit.governs else "")
-
-
-def read_record(case: Case) -> dict[str, object]:
-    """A case as understood, as plain data."""
-    from fibremr.case.tables import bar_of
-
-    bar = bar_of(case)
-    return {
-        "case": {"title": case.title, "sha256": case.sha256},
-        "values": [{"key": e.key, "value": e.value, "origin": e.origin} for e in case.entries],
-        "parts": [
-            {
-                "part": p.name,
-                "thickness_mm": p.thickness,
-                "area_mm2": p.moments.area,
-                "yield_MPa": st.law.yield_stress,
-                "law": st.law.name,
-                "source": st.source,
-            }
-            for p, st in zip(case.section.parts, case.steels, strict=True)
-        ],
-        "implies": {
-            "area_mm2": bar.geometry.area,
-            "second_moment_mm4": bar.geometry.second_moment,
-            "squash_load_kN": bar.squash / 1e3,
-            "My_kNm": bar.yield_moment / 1e6,
-            "Mp_kNm": bar.plastic.moment / 1e6,
-        },
-        "warnings": list(case.warnings),
-    }
-
-
-def profile_row(profile: Profile) -> dict[str, object]:
-    """A profile and its exact properties, about both axes."""
-    from math import pi
-
-    from fibremr.section.properties import geometry, plastic
-
-    section = profile.section()
-    ones = [1.0] * len(section.parts)
-    upright, lying = geometry(section), geometry(section.turned(pi / 2.0))
-    web, flange, radius = profile.thicknesses
-    return {
-        "profile": profile.name,
-        "h_mm": round(upright.top - upright.bottom, 6),
-        "b_mm": round(lying.top - lying.bottom, 6),
-        "tw_mm": web,
-        "tf_mm": flange,
-        "r_mm": radius,
-        "A_cm2": upright.area / 1e2,
-        "mass_kg_per_m": profile.mass_kg_per_m,
-        "Iy_cm4": upright.second_moment / 1e4,
-        "Wely_cm3": min(upright.modulus_top, upright.modulus_bottom) / 1e3,
-        "Wply_cm3": plastic(section, ones).modulus / 1e3,
-        "Iz_cm4": lying.second_moment / 1e4,
-        "Welz_cm3": min(lying.modulus_top, lying.modulus_bottom) / 1e3,
-        "Wplz_cm3": plastic(section.turned(pi / 2.0), ones).modulus / 1e3,
-        "standard": profile.standard,
-    }

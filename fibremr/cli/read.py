@@ -16,7 +16,7 @@ def read(case: str, settings: tuple[str, ...], as_json: bool) -> None:
     Analyses nothing and writes nothing.
     """
     from fibremr import output
-    from fibremr.summary import read_record, read_summary
+    from fibremr.reading import read_record, read_summary
 
     found = load(case, settings)
     click.echo(output.json_text(read_record(found)) if as_json else read_summary(found), nl=False)

@@ -2,11 +2,14 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import click
 
 from fibremr.cli.options import rows_option
+
+if TYPE_CHECKING:
+    from fibremr.section.catalogue import Profile
 
 
 def _show(rows: list[dict[str, Any]], as_json: bool, *, heading: str = "", footing: str = "") -> None:
@@ -48,7 +51,6 @@ def profiles(words: tuple[str, ...], as_json: bool) -> None:
     """
     from fibremr.errors import CaseError, Fault
     from fibremr.section import catalogue
-    from fibremr.summary import profile_row
 
     text = " ".join(words)
     wanted = catalogue.spelling(text)
@@ -61,7 +63,7 @@ def profiles(words: tuple[str, ...], as_json: bool) -> None:
         )
         raise CaseError([fault])
     _show(
-        [profile_row(p) for p in exact or found],
+        [_profile_row(p) for p in exact or found],
         as_json,
         footing="Properties are exact for the dimensions, root fillets and corner radii included. The\n"
         "tables are from memory of the standards named; each row was checked by its mass and, where known,\n"
@@ -143,3 +145,32 @@ def _words(rows: list[dict[str, str]], as_json: bool) -> None:
         click.echo(name[1])
         for key, text in rest:
             click.echo(indent("\n".join(wrap(f"{key}: {text}", 94)), "    "))
+
+
+def _profile_row(profile: Profile) -> dict[str, object]:
+    """A profile and its exact properties, about both axes."""
+    from math import pi
+
+    from fibremr.section.properties import geometry, plastic
+
+    section = profile.section()
+    ones = [1.0] * len(section.parts)
+    upright, lying = geometry(section), geometry(section.turned(pi / 2.0))
+    web, flange, radius = profile.thicknesses
+    return {
+        "profile": profile.name,
+        "h_mm": round(upright.top - upright.bottom, 6),
+        "b_mm": round(lying.top - lying.bottom, 6),
+        "tw_mm": web,
+        "tf_mm": flange,
+        "r_mm": radius,
+        "A_cm2": upright.area / 1e2,
+        "mass_kg_per_m": profile.mass_kg_per_m,
+        "Iy_cm4": upright.second_moment / 1e4,
+        "Wely_cm3": min(upright.modulus_top, upright.modulus_bottom) / 1e3,
+        "Wply_cm3": plastic(section, ones).modulus / 1e3,
+        "Iz_cm4": lying.second_moment / 1e4,
+        "Welz_cm3": min(lying.modulus_top, lying.modulus_bottom) / 1e3,
+        "Wplz_cm3": plastic(section.turned(pi / 2.0), ones).modulus / 1e3,
+        "standard": profile.standard,
+    }
