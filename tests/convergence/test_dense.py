@@ -11,8 +11,11 @@ import pytest
 from convergence.dense import i_cells, moments
 from fibremr.bending import Bar, trace_curve
 from fibremr.residual import EccsRolled
+from fibremr.rotation import Setup
+from fibremr.section.catalogue import profile
 from fibremr.section.shapes import i_section
 from fibremr.steel.bilinear import Bilinear
+from fibremr.steel.quad_linear import QuadLinear
 
 # h, b, tw, tf, r, fy, N/Npl (compression +), residual scale, minor
 BARS = [
@@ -48,16 +51,37 @@ def test_moments_agree_point_by_point(bar: tuple[float, ...]) -> None:
     assert np.max(np.abs(ours - dense)) < 3e-4 * of.plastic_alone.moment
 
 
-def test_finer_fibres_stay_within_the_reported_error() -> None:
-    of = builders.bar(i_section(250.0, 260.0, 7.5, 12.5, 24.0), Bilinear(210e3, 355.0), axial=-400e3)
-    residual = of.residual(EccsRolled(), 1.0)
+PLASTIC, QUAD = Bilinear(210e3, 355.0), QuadLinear(210e3, 355.0, 490.0)
+
+
+@pytest.mark.parametrize(
+    ("name", "law", "axial", "minor", "scale"),
+    [
+        ("IPE 450", PLASTIC, 0.0, False, 1.0),
+        ("HEA 260", QUAD, -0.2, True, 1.0),
+        ("HEB 300", PLASTIC, -0.4, False, 1.5),
+        ("T IPE 300 half", Bilinear(210e3, 355.0, 2100.0), 0.0, False, 0.0),
+        ("UPE 200", QUAD, 0.1, True, 0.0),
+        ("L 100x100x10", PLASTIC, 0.0, False, 0.0),
+    ],
+)
+def test_finer_fibres_move_no_reported_number(
+    name: str, law: Bilinear | QuadLinear, axial: float, minor: bool, scale: float
+) -> None:
+    """Ten times finer: moments move by less than the reported error, rotations by far less than 0.1 %."""
+    load = builders.bar(profile(name), law).squash
+    of = builders.bar(profile(name), law, axial=axial * load, minor=minor)
+    residual = of.residual(EccsRolled(), scale) if scale else None
     stops = [x * of.unit_curvature for x in (0.5, 0.8, 1.0, 1.3, 2.0, 4.0, 9.0, 20.0)]
+    stops = sorted([*stops, of.first_yield_curvature(residual)])
     usual = trace_curve(of, residual, stops=stops)
     finer = trace_curve(of, residual, stops=stops, target=5e-5)
     assert finer.fibres.area.size > 1.5 * usual.fibres.area.size
     for k in stops:
         a, b = (c.event(c.at_curvature(k)).moment for c in (usual, finer))
         assert abs(a - b) <= usual.error * of.plastic_alone.moment
+    turns = [Setup("three-point", 5000.0).rotations(c.curvature, c.moment)[0][-1] for c in (usual, finer)]
+    assert turns[0] == pytest.approx(turns[1], rel=3e-4)
 
 
 def test_moment_error_falls_with_the_square_of_the_cell() -> None:
